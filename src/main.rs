@@ -1,0 +1,3 @@
+//! The `gapwright` command.
+
+fn main() {}

@@ -1,0 +1,19 @@
+//! Every tolerance of the program, named, with its meaning and its default.
+
+/// Cells per nanometre of the grid on which all polygon vertices lie.
+///
+/// A power of two, so that a coordinate on the grid is exact in `f64` and a boolean of two
+/// regions meets shared edges exactly: 2⁻²⁰ nm, a millionth of a nanometre.
+pub const GRID_PER_NM: f64 = 1_048_576.0;
+
+/// Regions smaller than this are the dust of rounded intersections and are dropped, in nm².
+pub const DUST_AREA_NM2: f64 = 1e-5;
+
+/// Default width below which a throat is closed to precursor molecules, in nm
+/// (`settings: closure_width_nm` in a library file).
+pub const CLOSURE_WIDTH_NM: f64 = 0.5;
+
+/// Default accuracy wanted of every figure (`--accuracy`): relative to the space for
+/// positions, 0.25 nm or relative for films, absolute for shares, half of it relative for
+/// capacitance.
+pub const ACCURACY: f64 = 0.01;

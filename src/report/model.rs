@@ -1,0 +1,129 @@
+//! The result of `check` as data: exactly the JSON that `--format json` prints.
+
+use schemars::JsonSchema;
+use serde::Serialize;
+
+use crate::diag::Severity;
+use crate::measure::{Figure, SiteFigures};
+
+/// Version of the JSON form.
+pub const SCHEMA_VERSION: u32 = 1;
+
+/// Everything one call of `check` found.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct Report {
+    /// Version of this form.
+    pub schema: u32,
+    /// Name and version of the program.
+    pub tool: String,
+    /// One entry a flow.
+    pub runs: Vec<FlowReport>,
+}
+
+/// Whether a flow holds.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, JsonSchema)]
+#[serde(rename_all = "lowercase")]
+pub enum Verdict {
+    /// No error finding, no broken limit.
+    Pass,
+    /// An error finding or a broken limit.
+    Fail,
+    /// Something lies within the numerical error of its boundary.
+    Undecided,
+}
+
+/// One flow, judged.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct FlowReport {
+    /// Name of the flow.
+    pub flow: String,
+    /// File that it was read from.
+    pub file: String,
+    /// The verdict.
+    pub verdict: Verdict,
+    /// Names of the splits in the flow, judged or not.
+    pub splits: Vec<String>,
+    /// Findings, in the order of the text.
+    pub findings: Vec<FindingReport>,
+    /// Figures of every site of every judged variant.
+    pub sites: Vec<SiteFigures>,
+    /// Nets.
+    pub nets: Vec<NetReport>,
+    /// Limits, in the order of the text, one entry a site judged.
+    pub limits: Vec<LimitReport>,
+}
+
+/// One finding, with its place in the text.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct FindingReport {
+    /// Name of the rule.
+    pub rule: String,
+    /// How grave.
+    pub severity: Severity,
+    /// Operation number as written.
+    pub step: Option<String>,
+    /// Split; `null` for the unsplit flow.
+    pub split: Option<String>,
+    /// Site as the text names it.
+    pub site: Option<String>,
+    /// What is wrong.
+    pub message: String,
+    /// What to do about it.
+    pub help: Option<String>,
+    /// Whether a waiver covers it.
+    pub waived: bool,
+    /// The waiver's reason.
+    pub waived_because: Option<String>,
+    /// Where in the section: x, z in nm.
+    pub place_nm: Option<[f64; 2]>,
+    /// Length of surface exposed there, nm.
+    pub exposed_nm: Option<f64>,
+    /// First line of the place in the text, from 1.
+    pub line: usize,
+    /// First column, in characters, from 1.
+    pub column: usize,
+    /// Last line.
+    pub end_line: usize,
+    /// One past the last column.
+    pub end_column: usize,
+}
+
+/// One net.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct NetReport {
+    /// Its name.
+    pub name: String,
+    /// Split; `null` for the unsplit flow.
+    pub split: Option<String>,
+    /// Neighbours quiet, ps.
+    pub delay_ps: Option<Figure>,
+    /// Neighbours switching along, ps.
+    pub delay_along_ps: Option<Figure>,
+    /// Neighbours switching against, ps.
+    pub delay_against_ps: Option<Figure>,
+}
+
+/// One limit at one site.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct LimitReport {
+    /// The limit in its standard layout.
+    pub text: String,
+    /// Line in the flow, from 1.
+    pub line: usize,
+    /// Site as the text names it; `null` for a limit of a net or of the flow.
+    pub site: Option<String>,
+    /// Split; `null` for the unsplit flow.
+    pub split: Option<String>,
+    /// The figure, in the unit of the quantity; `null` when it does not exist.
+    pub value: Option<Figure>,
+    /// Unit of value and margin: `nm`, `1`, `aF/um`, `ohm/um`, `ps`, `C`.
+    pub unit: String,
+    /// State of the space, for a limit on a state.
+    pub state: Option<crate::flow::State>,
+    /// Whether it holds; `null` when it cannot be told.
+    pub holds: Option<bool>,
+    /// Distance of the value from the limit, positive when it holds, same unit.
+    pub margin: Option<f64>,
+    /// What a reader must know of this verdict (judged at nominal values, solid space …).
+    pub note: Option<String>,
+}
