@@ -8,6 +8,7 @@
 pub mod diag;
 pub mod source;
 pub mod units;
+pub mod world;
 
 pub mod num;
 
@@ -23,3 +24,5 @@ pub mod sim;
 pub mod measure;
 pub mod report;
 pub mod rules;
+
+pub mod cli;

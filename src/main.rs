@@ -1,3 +1,7 @@
 //! The `gapwright` command.
 
-fn main() {}
+use gapwright::cli::{self, Exit};
+
+fn main() -> Exit {
+    cli::run(std::env::args_os())
+}
