@@ -1,5 +1,7 @@
 //! The file system and standard input as a [`World`].
 
+#![allow(clippy::disallowed_types, reason = "this is where the disk is")]
+
 use std::fs::File;
 use std::io::{self, Read};
 
