@@ -1,6 +1,9 @@
 //! One serialisable model of a judged run and, one file each, its formats.
 
+mod columns;
 pub mod figures;
 mod model;
+mod paint;
+pub mod text;
 
 pub use model::*;
