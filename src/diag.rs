@@ -66,3 +66,18 @@ impl Diagnostic {
         self
     }
 }
+
+/// The known word that a misspelt one most likely stands for; `None` when none is near.
+///
+/// Nearness is the Damerau–Levenshtein distance, case ignored, at most a third of the word's
+/// length but at least one; the first of equally near words is taken.
+pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Option<&'a str> {
+    let word = word.to_lowercase();
+    let most = (word.chars().count() / 3).max(1);
+    known
+        .into_iter()
+        .map(|candidate| (strsim::damerau_levenshtein(&word, &candidate.to_lowercase()), candidate))
+        .filter(|(distance, _)| *distance <= most)
+        .min_by_key(|(distance, _)| *distance)
+        .map(|(_, candidate)| candidate)
+}

@@ -236,6 +236,22 @@ pub struct Arrival {
     pub sticking: Ranged,
 }
 
+impl Arrival {
+    /// All neutral, everything sticks: what the keys that are not given mean.
+    pub const NEUTRAL: Self = Self {
+        conformal: Ranged::exact(0.0),
+        directional: Ranged::exact(0.0),
+        exponent: Exponent::Cosine(Ranged::exact(1.0)),
+        tilt_deg: Ranged::exact(0.0),
+        sticking: Ranged::exact(1.0),
+    };
+
+    /// The neutral share: what conformal and directional leave.
+    pub fn neutral(&self) -> f64 {
+        (1.0 - self.conformal.value - self.directional.value).max(0.0)
+    }
+}
+
 /// A process, as loaded, or as overridden by a step's `with`.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Process {
