@@ -4,6 +4,16 @@
 //! the boundary of the solid regions that the ambient reaches; upright mirror walls bound the
 //! scene left and right, the sky is above, and solid or a mirror is below.
 
+mod directional;
+mod exchange;
+mod outline;
+mod transport;
+mod visibility;
+
+pub use exchange::Exchange;
+pub use outline::{Facet, Outline};
+pub use transport::{Arrival, Transport};
+
 use crate::geom::{Point, Region};
 
 /// How species arrive, as shares of growth on an open flat that sum to one.

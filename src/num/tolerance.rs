@@ -17,3 +17,12 @@ pub const CLOSURE_WIDTH_NM: f64 = 0.5;
 /// positions, 0.25 nm or relative for films, absolute for shares, half of it relative for
 /// capacitance.
 pub const ACCURACY: f64 = 0.01;
+
+/// A point nearer than this to an edge lies on it: a few cells of the grid, in nm.
+pub const ON_EDGE_NM: f64 = 4.0 / GRID_PER_NM;
+
+/// How far the ambient of a scene is carried above its highest point, in nm.
+pub const SKY_MARGIN_NM: f64 = 1.0;
+
+/// Relative residual at which the exchange of species counts as converged.
+pub const EXCHANGE_RESIDUAL: f64 = 1e-9;

@@ -1,0 +1,4 @@
+//! Outside checks of growth and removal: closed forms, converged integral equations, and two
+//! independent methods. Each test names its source.
+
+mod flux;
