@@ -446,7 +446,7 @@ fn word_of<T: Copy + PartialEq>(words: &[(&'static str, T)], value: Option<T>) -
     words.iter().find(|(_, known)| Some(*known) == value).map_or("", |(word, _)| word)
 }
 
-const KINDS: [(&str, Kind); 5] = [
+pub(super) const KINDS: [(&str, Kind); 5] = [
     ("dielectric", Kind::Dielectric),
     ("conductor", Kind::Conductor),
     ("semiconductor", Kind::Semiconductor),

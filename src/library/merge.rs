@@ -70,7 +70,10 @@ impl Library {
         references: &[(String, super::file::Reference)],
         found: &mut Defects,
     ) {
-        let families: BTreeSet<&str> = self.materials.iter().map(|m| m.family.as_str()).collect();
+        let mut families: BTreeSet<&str> =
+            self.materials.iter().map(|m| m.family.as_str()).collect();
+        // A material that names no family has its kind's word for one.
+        families.extend(super::file::KINDS.iter().map(|(word, _)| *word));
         for (owner, reference) in references {
             let name = reference.name.as_str();
             let family = reference.or_family && families.contains(name);

@@ -312,6 +312,17 @@ impl Process {
         by_name_or_family(&self.grows_on, material).map_or(0.0, |entry| entry.value)
     }
 
+    /// Whether it can be named after `by` at a verb: its own, and a strip (an ash, a solvent)
+    /// may also release through what lets it pass.
+    pub fn serves(&self, verb: Verb) -> bool {
+        self.verb == verb || (self.verb == Verb::Strip && verb == Verb::Release)
+    }
+
+    /// Whether it can deposit, fill or remove a material; a process without a list can any.
+    pub fn handles(&self, material: &Material) -> bool {
+        self.materials.is_empty() || self.materials.contains(&material.name)
+    }
+
     /// Whether the wafer meets any of these ambients.
     pub fn meets(&self, ambients: &[Ambient]) -> bool {
         self.ambient.iter().any(|ambient| ambients.contains(ambient))
