@@ -24,5 +24,6 @@ pub mod sim;
 pub mod measure;
 pub mod report;
 pub mod rules;
+pub mod verdict;
 
 pub mod cli;

@@ -26,6 +26,22 @@ impl Region {
         }
         Some(least)
     }
+
+    /// The point of the outline that lies nearest to `p`; `None` where the region is empty.
+    pub fn nearest(&self, p: Point) -> Option<Point> {
+        let feet = self.edges().map(|(a, b)| foot(p, a, b));
+        feet.min_by(|a, b| p.distance(*a).total_cmp(&p.distance(*b)))
+    }
+}
+
+/// The point of the segment from `a` to `b` nearest to `p`.
+fn foot(p: Point, a: Point, b: Point) -> Point {
+    let along = b - a;
+    let length2 = along.dot(along);
+    if length2 == 0.0 {
+        return a;
+    }
+    a + along * ((p - a).dot(along) / length2).clamp(0.0, 1.0)
 }
 
 /// A lower bound of the distance of two segments: that of their boxes along one axis.
@@ -56,6 +72,14 @@ mod tests {
         assert_eq!(square.distance(&square.translated(Point::new(2.0, 0.0))), Some(0.0));
         assert_eq!(square.distance(&Region::rectangle([0.5, 1.0], [0.5, 1.0])), Some(0.0));
         assert_eq!(square.distance(&Region::empty()), None);
+    }
+
+    #[test]
+    fn the_nearest_point_of_a_square_is_a_foot_or_a_corner() {
+        let square = Region::rectangle([0.0, 2.0], [0.0, 2.0]);
+        assert_eq!(square.nearest(Point::new(1.0, 5.0)), Some(Point::new(1.0, 2.0)));
+        assert_eq!(square.nearest(Point::new(3.0, 5.0)), Some(Point::new(2.0, 2.0)));
+        assert_eq!(Region::empty().nearest(Point::default()), None);
     }
 
     #[test]

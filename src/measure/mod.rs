@@ -1,5 +1,36 @@
-//! Quantities of a traced cell, each with its numerical error; one file a quantity.
+//! Quantities of a traced cell, each with its numerical error; one file a quantity or a tight
+//! group of them.
+//!
+//! One trace gives plain numbers ([`gap`]); two of them, coarse and fine, give figures
+//! ([`error`], [`geometry`]); the figures of a site are put together in [`site`].
 
+mod error;
+mod film;
+mod gap;
+mod geometry;
+#[cfg(test)]
+pub(crate) mod hand;
 mod model;
+mod polish;
+mod reading;
+mod seal;
+mod site;
+mod via;
+mod view;
+mod void;
 
+pub use geometry::{Geometry, Traced, for_all, site_states};
 pub use model::*;
+pub use reading::{Missing, Reading, Unclear};
+pub use site::{Extras, site};
+
+/// Why a site could not be measured: an internal error, never a property of the flow.
+#[derive(Debug, Clone, PartialEq, thiserror::Error)]
+pub enum MeasureError {
+    /// A trace contradicts itself.
+    #[error("inconsistent trace: {0}")]
+    Inconsistent(&'static str),
+    /// A figure came out as no number.
+    #[error("{0} is not a finite number")]
+    NotFinite(&'static str),
+}

@@ -178,6 +178,8 @@ pub struct SiteFigures {
     pub corner_film_nm: Option<Figure>,
     /// Lowest polish plane after the void closed, above its top, nm.
     pub polish_margin_nm: Option<Figure>,
+    /// The same in standard deviations of plane and void top; `null` without tolerances.
+    pub polish_margin_sigmas: Option<f64>,
     /// Seal thickness beyond closure, nm.
     pub seal_margin_nm: Option<Figure>,
     /// Widest space of these lines that the seal still closes, nm.
@@ -188,4 +190,19 @@ pub struct SiteFigures {
     pub electrical: Option<ElectricalFigures>,
     /// Step by step.
     pub steps: Vec<StepFigures>,
+}
+
+/// The figures of one net.
+#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
+pub struct NetReport {
+    /// Its name.
+    pub name: String,
+    /// Split; `null` for the unsplit flow.
+    pub split: Option<String>,
+    /// Neighbours quiet, ps.
+    pub delay_ps: Option<Figure>,
+    /// Neighbours switching along, ps.
+    pub delay_along_ps: Option<Figure>,
+    /// Neighbours switching against, ps.
+    pub delay_against_ps: Option<Figure>,
 }

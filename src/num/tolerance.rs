@@ -26,3 +26,12 @@ pub const SKY_MARGIN_NM: f64 = 1.0;
 
 /// Relative residual at which the exchange of species counts as converged.
 pub const EXCHANGE_RESIDUAL: f64 = 1e-9;
+
+/// A line that lost more than this at its top corner has none left to measure from, in nm.
+pub const CORNER_LOSS_NM: f64 = 5.0;
+
+/// Error of a figure of the fine trace, as a multiple of its difference to the coarse one.
+pub const GROWTH_SAFETY: f64 = 1.25;
+
+/// Least error of a length that a grown front has, as a multiple of the closure width.
+pub const GROWTH_FLOOR_CLOSURE_WIDTHS: f64 = 0.02;

@@ -4,7 +4,9 @@ use schemars::JsonSchema;
 use serde::Serialize;
 
 use crate::diag::Severity;
-use crate::measure::{Figure, SiteFigures};
+pub use crate::measure::NetReport;
+use crate::measure::SiteFigures;
+pub use crate::verdict::{LimitReport, Verdict};
 
 /// Version of the JSON form.
 pub const SCHEMA_VERSION: u32 = 1;
@@ -18,18 +20,6 @@ pub struct Report {
     pub tool: String,
     /// One entry a flow.
     pub runs: Vec<FlowReport>,
-}
-
-/// Whether a flow holds.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, JsonSchema)]
-#[serde(rename_all = "lowercase")]
-pub enum Verdict {
-    /// No error finding, no broken limit.
-    Pass,
-    /// An error finding or a broken limit.
-    Fail,
-    /// Something lies within the numerical error of its boundary.
-    Undecided,
 }
 
 /// One flow, judged.
@@ -86,44 +76,4 @@ pub struct FindingReport {
     pub end_line: usize,
     /// One past the last column.
     pub end_column: usize,
-}
-
-/// One net.
-#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
-pub struct NetReport {
-    /// Its name.
-    pub name: String,
-    /// Split; `null` for the unsplit flow.
-    pub split: Option<String>,
-    /// Neighbours quiet, ps.
-    pub delay_ps: Option<Figure>,
-    /// Neighbours switching along, ps.
-    pub delay_along_ps: Option<Figure>,
-    /// Neighbours switching against, ps.
-    pub delay_against_ps: Option<Figure>,
-}
-
-/// One limit at one site.
-#[derive(Debug, Clone, PartialEq, Serialize, JsonSchema)]
-pub struct LimitReport {
-    /// The limit in its standard layout.
-    pub text: String,
-    /// Line in the flow, from 1.
-    pub line: usize,
-    /// Site as the text names it; `null` for a limit of a net or of the flow.
-    pub site: Option<String>,
-    /// Split; `null` for the unsplit flow.
-    pub split: Option<String>,
-    /// The figure, in the unit of the quantity; `null` when it does not exist.
-    pub value: Option<Figure>,
-    /// Unit of value and margin: `nm`, `1`, `aF/um`, `ohm/um`, `ps`, `C`.
-    pub unit: String,
-    /// State of the space, for a limit on a state.
-    pub state: Option<crate::flow::State>,
-    /// Whether it holds; `null` when it cannot be told.
-    pub holds: Option<bool>,
-    /// Distance of the value from the limit, positive when it holds, same unit.
-    pub margin: Option<f64>,
-    /// What a reader must know of this verdict (judged at nominal values, solid space …).
-    pub note: Option<String>,
 }

@@ -1,0 +1,81 @@
+//! `seal-margin`, and which step closed a space: read from the closures of the trace.
+
+use super::view::Window;
+use crate::flow::{Action, State, Variant};
+use crate::geom::{Point, Region};
+use crate::sim::{Event, Origin, Section, Stage};
+
+/// How a space was closed.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Seal {
+    /// Index of the step whose film closed it.
+    pub step: usize,
+    /// Open-field thickness of that film at closure and beyond it, in nm; `None` where no throat
+    /// closed, as under a film that bridges what a release takes away.
+    pub film: Option<Film>,
+}
+
+/// The film that closed a throat, thicknesses on an open flat in nm.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Film {
+    /// At closure.
+    pub at_closure_nm: f64,
+    /// Beyond closure.
+    pub margin_nm: f64,
+}
+
+/// The step that closed a space, if its last stage shows it closed.
+///
+/// The last closure counts that shut off something below the line top: what meets higher up
+/// shuts only the notch. Where no throat closed, it is the step whose film lies over the void.
+pub(super) fn seal(variant: &Variant, stages: &[Stage], index: usize) -> Option<Seal> {
+    let last = stages.last()?;
+    if last.states.get(index) == Some(&State::Open) {
+        return None;
+    }
+    let line_top = last.section.drawn.line_top;
+    let after_opening =
+        stages.iter().rposition(|stage| stage.states.get(index) == Some(&State::Open));
+    let closing = &stages[after_opening.map_or(0, |open| open + 1)..];
+    for stage in closing {
+        let (Some(step), Some(at_closure_nm)) = (stage.step, closure_nm(stage, index, line_top))
+        else {
+            continue;
+        };
+        if let Action::Deposit { thickness, .. } = &variant.steps[step].action {
+            let margin_nm = thickness.nominal.nm() - at_closure_nm;
+            return Some(Seal { step, film: Some(Film { at_closure_nm, margin_nm }) });
+        }
+    }
+    let step = roof_step(&last.section, index)?;
+    Some(Seal { step, film: None })
+}
+
+/// Thickness at which a stage closed a space.
+fn closure_nm(stage: &Stage, index: usize, line_top: f64) -> Option<f64> {
+    let closures = stage.events.iter().filter_map(|event| match event {
+        Event::Closed { space, thickness_nm, void, .. } if *space == index => {
+            Some((*thickness_nm, void.bounds().is_some_and(|b| b.min.z < line_top)))
+        }
+        _ => None,
+    });
+    let closures: Vec<_> = closures.collect();
+    let last_below = closures.iter().rev().find(|(_, below)| *below);
+    last_below.or(closures.last()).map(|(thickness, _)| *thickness)
+}
+
+/// The step that made the body right above the highest void of a space.
+fn roof_step(section: &Section, index: usize) -> Option<usize> {
+    let window = Window::of(&section.drawn, index);
+    let tops = section.voids.iter().flat_map(Region::rings).flatten().copied();
+    let top = tops.filter(|p| window.holds(*p)).max_by(|a, b| a.z.total_cmp(&b.z))?;
+    let above = Point::new(top.x, top.z + ABOVE_NM);
+    let body = section.bodies.iter().find(|body| body.region.contains(above))?;
+    match body.origin {
+        Origin::Step(step) => Some(step),
+        _ => None,
+    }
+}
+
+/// How far above the top of a void its roof is looked up, in nm.
+const ABOVE_NM: f64 = 1e-3;
