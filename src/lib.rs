@@ -13,6 +13,7 @@ pub mod world;
 pub mod num;
 
 pub mod geom;
+pub mod syntax;
 
 pub mod field;
 pub mod flow;

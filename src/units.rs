@@ -1,6 +1,10 @@
 //! Quantities as types: a private number in one base unit, one constructor a unit.
 
+mod symbol;
+
 use serde::{Deserialize, Serialize};
+
+pub use symbol::{Dimensioned, Unit, UnitKind};
 
 macro_rules! quantity {
     ($(#[$doc:meta])* $name:ident { $($(#[$unit_doc:meta])* $from:ident / $to:ident = $factor:expr;)+ }) => {

@@ -1,0 +1,3 @@
+//! The flow language, from text to a resolved flow.
+
+mod layout;
