@@ -5,11 +5,13 @@
 //! scene left and right, the sky is above, and solid or a mirror is below.
 
 mod directional;
+mod erode;
 mod exchange;
 mod outline;
 mod transport;
 mod visibility;
 
+pub use erode::{depth_to_reach, erode, penetrate};
 pub use exchange::Exchange;
 pub use outline::{Facet, Outline};
 pub use transport::{Arrival, Transport};

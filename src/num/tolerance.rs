@@ -35,3 +35,20 @@ pub const GROWTH_SAFETY: f64 = 1.25;
 
 /// Least error of a length that a grown front has, as a multiple of the closure width.
 pub const GROWTH_FLOOR_CLOSURE_WIDTHS: f64 = 0.02;
+
+/// How far beside an edge to look for what lies there, in nm: well above the rounding of the
+/// grid, well below any layer.
+pub const SIDE_STEP_NM: f64 = 2e-5;
+
+/// Two outlines nearer than this are the same line, in nm: some cells of the grid.
+pub const SAME_LINE_NM: f64 = 4e-6;
+
+/// Vertices of a moving surface that lie within this of the chord are left out of its facets,
+/// in nm.
+pub const FACET_SLACK_NM: f64 = 2e-4;
+
+/// A removal is done when no surface has further than this to go, in nm.
+pub const LAG_LEFT_NM: f64 = 1e-4;
+
+/// Largest distance between a rounded corner and the polygon that stands for it, in nm.
+pub const ARC_SAGITTA_NM: f64 = 0.01;
