@@ -2,6 +2,8 @@
 
 mod model;
 mod quantity;
+mod resolve;
 
 pub use model::*;
 pub use quantity::{Dimension, Quantity};
+pub use resolve::{resolve, uses};

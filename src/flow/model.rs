@@ -170,8 +170,8 @@ pub enum Place {
 
 /// One space of the wafer at which figures are taken.
 ///
-/// Sites are compared by the nominal lengths of the unsplit flow, so that a split that changes
-/// a width keeps its sites.
+/// A site keeps its label in every variant that has it; across variants sites are compared by
+/// their labels, since the numbers behind them may differ.
 #[derive(Debug, Clone, PartialEq)]
 pub enum Site {
     /// Array number `array` of [`Lines::spaces`].
@@ -204,8 +204,15 @@ impl Site {
 impl Variant {
     /// All sites of this variant's wafer: arrays in the order of the text, then rows.
     pub fn sites(&self) -> Vec<Site> {
+        self.wafer.sites()
+    }
+}
+
+impl Wafer {
+    /// All sites: arrays in the order of the text, then rows.
+    pub fn sites(&self) -> Vec<Site> {
         let nm = |length: Amount<Length>| trim(length.nominal.nm());
-        let arrays = self.wafer.lines.spaces.iter().enumerate().map(|(array, pair)| {
+        let arrays = self.lines.spaces.iter().enumerate().map(|(array, pair)| {
             let label = if pair.left == pair.right {
                 format!("{} nm", nm(pair.left))
             } else {
@@ -213,7 +220,7 @@ impl Variant {
             };
             Site::Array { array, label }
         });
-        let rows = self.wafer.rows.iter().enumerate().flat_map(|(row, drawn)| {
+        let rows = self.rows.iter().enumerate().flat_map(|(row, drawn)| {
             (1..=drawn.spaces.len()).map(move |space| Site::Row {
                 row,
                 space,
@@ -238,7 +245,8 @@ pub struct Step {
     pub op_text: String,
     /// What is done.
     pub action: Action,
-    /// The sites to which `only at` limits it; `None`: everywhere.
+    /// The sites to which `only at` limits it; `None`: everywhere; empty where this variant has
+    /// none of them: nowhere.
     pub only_at: Option<Vec<Site>>,
     /// Operations that must come before, by `after`.
     pub after: Vec<Spanned<u32>>,
@@ -521,7 +529,8 @@ impl State {
 pub struct Limit {
     /// What is limited.
     pub claim: Claim,
-    /// Where; `None`: at every space where the quantity exists.
+    /// Where; `None`: at every space where the quantity exists. A site that a variant lacks is
+    /// not judged there.
     pub at: Option<Vec<Site>>,
     /// For which net, by its index in [`Flow::nets`].
     pub for_net: Option<usize>,

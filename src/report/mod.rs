@@ -2,6 +2,7 @@
 
 mod columns;
 pub mod figures;
+pub mod messages;
 mod model;
 mod paint;
 pub mod text;

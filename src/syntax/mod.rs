@@ -24,4 +24,4 @@ pub use parse::parse;
 pub use sizes::*;
 pub use tidy::{line_text, tidy};
 pub use tree::*;
-pub use words::{RESERVED, STEP_VERBS, Section, is_name, is_reserved};
+pub use words::{RESERVED, SELECTIVE_VERBS, STEP_VERBS, Section, is_name, is_reserved};

@@ -5,7 +5,7 @@ use super::cursor::{Cursor, Parsed, once};
 use super::lex::TokenKind;
 use super::nearest::nearest;
 use super::tree::{Action, Film, Form, Gap, Height, Name, Op, Site, StepStatement, With, Written};
-use super::words::STEP_VERBS;
+use super::words::{SELECTIVE_VERBS, STEP_VERBS};
 use crate::diag::Diagnostic;
 use crate::source::Spanned;
 use crate::units::{Duration, Length, Share, Temperature};
@@ -69,9 +69,6 @@ fn grammar(verb: &str) -> Option<(&'static str, &'static [&'static str])> {
         _ => return None,
     })
 }
-
-/// The verbs on which `only at` stands.
-const SELECTIVE: &[&str] = &["etch", "convert", "strip", "release", "clean", "via"];
 
 /// The clauses of one step, each read when it comes.
 #[derive(Default)]
@@ -182,13 +179,13 @@ fn tail_clause(cursor: &mut Cursor, clause: &str, verb: &Name, tail: &mut Tail) 
             cursor.need_word("at")?;
             let sites = cursor.sites()?;
             let span = cursor.since(start);
-            if !SELECTIVE.contains(&verb.value.as_str()) {
+            if !SELECTIVE_VERBS.contains(&verb.value.as_str()) {
                 return Err(Diagnostic::error(
                     verb.span,
                     format!("`{}` takes no `only at`", verb.value),
                 )
                 .label("acts on the whole wafer")
-                .help(format!("`only at` stands on {}", SELECTIVE.join(", "))));
+                .help(format!("`only at` stands on {}", SELECTIVE_VERBS.join(", "))));
             }
             once(&mut tail.only_at, sites, "only at", span)?;
         }

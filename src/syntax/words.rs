@@ -52,6 +52,9 @@ pub const STEP_VERBS: &[&str] = &[
     "anneal", "cure", "clean", "via",
 ];
 
+/// The verbs on which `only at` stands.
+pub const SELECTIVE_VERBS: &[&str] = &["etch", "convert", "strip", "release", "clean", "via"];
+
 /// States of a space.
 pub(super) const STATES: &[&str] = &["solid", "sealed", "hermetic", "open"];
 
