@@ -3,6 +3,7 @@
 use std::collections::BTreeMap;
 
 use super::Ranged;
+use super::file::MAX_SHOWN;
 use super::numbers::Bounds;
 use super::yaml::{Node, Place, Value};
 use crate::diag::{Severity, nearest};
@@ -23,6 +24,14 @@ pub(super) struct Defects(pub Vec<Defect>);
 impl Defects {
     pub fn error(&mut self, place: Place, message: impl Into<String>, label: impl Into<String>) {
         self.push(Severity::Error, place, message, label, None);
+    }
+
+    /// A known word near a misspelt one, as a question; none once more is found than is shown.
+    pub fn hint<'a>(&self, word: &str, known: impl IntoIterator<Item = &'a str>) -> Option<String> {
+        if self.0.len() >= MAX_SHOWN {
+            return None;
+        }
+        nearest(word, known).map(|near| format!("did you mean `{near}`?"))
     }
 
     pub fn push(
@@ -189,8 +198,7 @@ impl<'n> Fields<'n> {
     /// Says which keys nobody took.
     pub fn close(self, defects: &mut Defects) {
         for entry in self.entries.iter().filter(|entry| !entry.taken) {
-            let help = nearest(entry.key, self.asked.iter().copied())
-                .map(|known| format!("did you mean `{known}`?"));
+            let help = defects.hint(entry.key, self.asked.iter().copied());
             let message = format!("{} has no key `{}`", self.what, entry.key);
             defects.push(Severity::Error, entry.key_place, message, "unknown key", help);
         }
@@ -221,8 +229,7 @@ pub(super) fn choose<T: Copy>(
     let found = words.iter().find(|(known, _)| *known == word).map(|(_, value)| *value);
     if found.is_none() {
         let known: Vec<&str> = words.iter().map(|(known, _)| *known).collect();
-        let help =
-            nearest(word, known.iter().copied()).map(|near| format!("did you mean `{near}`?"));
+        let help = defects.hint(word, known.iter().copied());
         let message = format!("`{key}` cannot be `{word}`: one of {}", known.join(", "));
         defects.push(Severity::Error, place, message, "unknown word", help);
     }

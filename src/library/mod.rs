@@ -6,25 +6,14 @@ mod file;
 mod merge;
 mod model;
 mod numbers;
+mod read_material;
+mod read_process;
+mod words;
 mod yaml;
 
 pub use built_in::FILES as BUILT_IN_FILES;
-pub use file::{LibraryFile, MAX_DEFECTS_SHOWN, Placed, Reference, RuleEntry, parse};
+pub use file::{KnownRule, LibraryFile, MAX_SHOWN, Placed, Reference, RuleEntry, parse};
 pub use model::*;
 pub use numbers::{ARRIVAL_NUMBERS, Bounds, MATERIAL_NUMBERS, NumberKey, PROCESS_NUMBERS, Unit};
+pub use words::HAZARDS;
 pub use yaml::{MAX_BYTES, MAX_DEPTH, MAX_NODES, Place};
-
-/// The hazards that a material or process may name.
-pub const HAZARDS: &[&str] = &[
-    "hf",
-    "silane",
-    "ozone",
-    "fluorine",
-    "chlorine",
-    "decomposition",
-    "ruthenium-oxide",
-    "solvent",
-    "slurry",
-    "vacuum",
-    "heat",
-];

@@ -4,13 +4,14 @@
 //! keys win. So the tree is built by a visitor of our own, which numbers its nodes in the order
 //! of the text; [`locate`] reads the text once more and stops with an error at the node of a
 //! number. Cost: one reading of the text for the tree, one more for each place asked for.
+//! Reading costs the square of the depth of brackets, so their depth is counted beforehand.
 
 use std::cell::Cell;
 
 use serde::de::{DeserializeSeed, EnumAccess, Error, IgnoredAny, MapAccess, SeqAccess, Visitor};
 use serde::{Deserializer, de::VariantAccess};
 
-use crate::diag::Diagnostic;
+use crate::diag::{Diagnostic, Severity};
 use crate::source::{Source, Span};
 
 /// Largest library file that is read, in bytes.
@@ -19,6 +20,11 @@ pub const MAX_BYTES: usize = 1 << 20;
 pub const MAX_NODES: u32 = 200_000;
 /// Deepest nesting that is read; a library needs five.
 pub const MAX_DEPTH: u32 = 16;
+/// Deepest nesting of brackets that is handed to the reader at all.
+const MAX_BRACKETS: usize = 100;
+
+const TOO_DEEP: &str = "nested more than 16 deep";
+const TOO_MANY: &str = "more than 200,000 values, aliases expanded";
 
 /// A node by its number in the order of the text.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -65,14 +71,65 @@ pub(super) fn read(source: &Source) -> Result<Node, Diagnostic> {
             "the file has {} bytes, a library file at most {MAX_BYTES} (1 MiB)",
             source.text.len()
         );
-        return Err(Diagnostic::new(crate::diag::Severity::Error, None, message));
+        return Err(Diagnostic::new(Severity::Error, None, message));
+    }
+    if let Some(at) = too_many_brackets(&source.text) {
+        return Err(Diagnostic::error(Span::new(at, at + 1), TOO_DEEP));
     }
     let walk = Walk::default();
     walk.run(&source.text).map_err(|error| {
-        let span = span_of(source, &error);
-        let message = walk.excess.get().map_or_else(|| format!("not YAML: {error}"), str::to_owned);
-        Diagnostic::new(crate::diag::Severity::Error, span, message)
+        let message = walk.excess.get().map_or_else(|| in_plain_words(&error), str::to_owned);
+        Diagnostic::new(Severity::Error, span_of(source, &error), message)
     })
+}
+
+fn in_plain_words(error: &serde_yaml::Error) -> String {
+    match error.to_string().as_str() {
+        "repetition limit exceeded" => TOO_MANY.to_owned(),
+        said if said.contains("more than one document") => "more than one YAML document".to_owned(),
+        said => format!("not YAML: {said}"),
+    }
+}
+
+/// The bracket that exceeds [`MAX_BRACKETS`]; quoted text and comments are passed over.
+fn too_many_brackets(text: &str) -> Option<usize> {
+    let mut depth = 0_usize;
+    // A quote opens only where a value begins, a comment only after a blank.
+    let (mut before, mut blank) = ('\n', true);
+    let mut rest = text.char_indices();
+    while let Some((at, c)) = rest.next() {
+        match c {
+            '#' if blank => {
+                rest.find(|(_, c)| *c == '\n');
+                before = '\n';
+                continue;
+            }
+            '"' if "{[,:-?\n".contains(before) => {
+                while let Some((_, c)) = rest.next().filter(|(_, c)| *c != '"') {
+                    if c == '\\' {
+                        rest.next();
+                    }
+                }
+                continue;
+            }
+            // A doubled quote stands for one; `before` is kept, so the second opens again.
+            '\'' if "{[,:-?\n".contains(before) => {
+                rest.find(|(_, c)| *c == '\'');
+                continue;
+            }
+            '{' | '[' => depth += 1,
+            '}' | ']' => depth = depth.saturating_sub(1),
+            _ => {}
+        }
+        if depth > MAX_BRACKETS {
+            return Some(at);
+        }
+        blank = c.is_whitespace();
+        if !blank || c == '\n' {
+            before = c;
+        }
+    }
+    None
 }
 
 /// Where a node of a text stands.
@@ -83,9 +140,10 @@ pub(super) fn locate(source: &Source, place: Place) -> Option<Span> {
 
 fn span_of(source: &Source, error: &serde_yaml::Error) -> Option<Span> {
     let (bom, text) = without_bom(&source.text);
-    // The index counts characters, whatever its documentation says.
-    let index = error.location()?.index();
-    let start = text.char_indices().nth(index).map_or(text.len(), |(at, _)| at);
+    let mut start = error.location()?.index().min(text.len());
+    while !text.is_char_boundary(start) {
+        start -= 1;
+    }
     Some(Span::new(bom + start, bom + start + token_length(&text[start..])))
 }
 
@@ -156,10 +214,10 @@ impl Reader<'_> {
             return Err(E::custom("here"));
         }
         if self.place.0 >= MAX_NODES {
-            return Err(self.walk.too_much("more than 200,000 values, aliases expanded"));
+            return Err(self.walk.too_much(TOO_MANY));
         }
         if self.depth > MAX_DEPTH {
-            return Err(self.walk.too_much("nested more than 16 deep"));
+            return Err(self.walk.too_much(TOO_DEEP));
         }
         Ok(())
     }
@@ -182,6 +240,10 @@ impl<'de> Visitor<'de> for Reader<'_> {
     }
 
     fn visit_unit<E: Error>(self) -> Result<Node, E> {
+        self.node(Value::Null)
+    }
+
+    fn visit_none<E: Error>(self) -> Result<Node, E> {
         self.node(Value::Null)
     }
 
