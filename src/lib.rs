@@ -20,6 +20,8 @@ pub mod flow;
 pub mod front;
 pub mod library;
 
+pub mod graph;
+
 pub mod sim;
 
 pub mod measure;

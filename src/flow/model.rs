@@ -74,6 +74,16 @@ pub enum Below {
     Film(Film),
 }
 
+impl Below {
+    /// Its material.
+    pub fn material(&self) -> MaterialId {
+        match self {
+            Self::Bulk(material) => material.value,
+            Self::Plane(film) | Self::Film(film) => film.material,
+        }
+    }
+}
+
 /// A thickness of a material.
 #[derive(Debug, Clone)]
 pub struct Film {

@@ -68,6 +68,13 @@ pub enum CopperBarrier {
     FromNm(f64),
 }
 
+impl CopperBarrier {
+    /// Whether it is a barrier at some thickness.
+    pub fn counts(self) -> bool {
+        self != Self::No
+    }
+}
+
 /// What gases and moisture a material lets pass, tightest first.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, serde::Serialize)]
 #[serde(rename_all = "lowercase")]

@@ -15,7 +15,8 @@ pub struct Finding {
     pub step: Option<usize>,
     /// Split; `None` for the unsplit flow.
     pub split: Option<String>,
-    /// The site as the text names it; `None` when it holds for all or for none.
+    /// The site as the text names it, or several (`32 nm, 48 nm`); `None` when it holds for
+    /// all or for none.
     pub site: Option<String>,
     /// What is wrong, one sentence without a final stop.
     pub message: String,
@@ -27,6 +28,6 @@ pub struct Finding {
     pub exposed_nm: Option<f64>,
     /// Where in the text.
     pub span: Span,
-    /// Why it is waived, when it is.
-    pub waived: Option<String>,
+    /// What waives it: its place in the flow's waivers.
+    pub waiver: Option<usize>,
 }

@@ -1,0 +1,98 @@
+//! `outside-ballistic`: molecules collide in the space, which the growth model leaves out.
+
+use crate::diag::Severity;
+use crate::flow::Action;
+use super::frame::shape::drawn_width;
+use super::frame::{Context, Findings, Found, Needs, Rule, Threshold};
+
+pub static RULE: Rule = Rule {
+    name: "outside-ballistic",
+    severity: Severity::Warning,
+    needs: Needs::Section,
+    thresholds: &[
+        Threshold {
+            key: "note_below",
+            default: 10.0,
+            meaning: "Knudsen number below which it is a note",
+        },
+        Threshold {
+            key: "warning_below",
+            default: 1.0,
+            meaning: "Knudsen number below which it is a warning",
+        },
+    ],
+    yields_to: &[],
+    page: include_str!("../../docs/rules/outside-ballistic.md"),
+    check: Some(check),
+};
+
+/// Boltzmann's constant, J/K (exact in the SI).
+const BOLTZMANN: f64 = 1.380_649e-23;
+
+/// A torr in Pa.
+const TORR: f64 = 101_325.0 / 760.0;
+
+fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
+    let (note, warning) = (findings.threshold("note_below"), findings.threshold("warning_below"));
+    for (index, step) in context.steps() {
+        let Action::Deposit { process, .. } = &step.action else { continue };
+        let process = &process.process;
+        let transported = process.arrival.as_ref().is_some_and(|a| a.conformal.value < 1.0);
+        if !transported || process.dose_pa_s.is_some() {
+            continue;
+        }
+        let name = &process.name;
+        let temperature = findings.want(name, "temperature_c", process.temperature_c);
+        let pressure = findings.want(name, "pressure_torr", process.pressure_torr);
+        let diameter = findings.want(name, "molecule_diameter_nm", process.molecule_diameter_nm);
+        let (Some(temperature), Some(pressure), Some(diameter)) = (temperature, pressure, diameter)
+        else {
+            continue;
+        };
+        let path_nm = mean_free_path_nm(temperature.value, pressure.value, diameter.value);
+        let widest = context
+            .moments()
+            .filter(|moment| moment.index == index)
+            .flat_map(|moment| moment.spaces().map(move |space| (moment, space)))
+            .map(|(m, space)| (drawn_width(&m.before.section, space), m.cell, space))
+            .max_by(|a, b| a.0.total_cmp(&b.0));
+        let Some((width, cell, space)) = widest else { continue };
+        let knudsen = path_nm / width;
+        if knudsen >= note {
+            continue;
+        }
+        let severity = if knudsen < warning { Severity::Warning } else { Severity::Note };
+        let message = format!(
+            "the mean free path in {name} is {path_nm:.0} nm, {knudsen:.1} times a space of \
+             {width:.0} nm: molecules collide there, which the growth leaves out"
+        );
+        findings.add(
+            Found::on_step(context, index, message)
+                .severity(severity)
+                .help("take the figures as rough, or lower the pressure")
+                .in_space(cell, space),
+        );
+    }
+}
+
+/// λ = k T / (√2 π d² p), of kinetic theory.
+fn mean_free_path_nm(temperature_c: f64, pressure_torr: f64, diameter_nm: f64) -> f64 {
+    let kelvin = crate::units::Temperature::from_celsius(temperature_c).kelvin();
+    let area = std::f64::consts::PI * (diameter_nm * 1e-9).powi(2);
+    1e9 * BOLTZMANN * kelvin / (std::f64::consts::SQRT_2 * area * pressure_torr * TORR)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::mean_free_path_nm;
+
+    /// Nitrogen of 0.375 nm by the formula: 49.7 µm at 1 Torr and 300 K, 0.208 µm at 600 Torr
+    /// and 753 K (hand calculation).
+    #[test]
+    fn mean_free_paths_of_nitrogen() {
+        for (kelvin, torr, um) in [(300.0, 1.0, 49.7), (673.0, 5.0, 22.3), (753.0, 600.0, 0.208)] {
+            let path = mean_free_path_nm(kelvin - 273.15, torr, 0.375) / 1000.0;
+            assert!((path / um - 1.0).abs() < 5e-3, "{path}");
+        }
+    }
+}
