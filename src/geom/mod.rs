@@ -3,11 +3,13 @@
 //! x runs across the lines, z upward, lengths in nanometres. Every vertex of a [`Region`]
 //! lies on the grid of [`crate::num::tolerance::GRID_PER_NM`].
 
+mod conform;
 mod distance;
 mod point;
 mod region;
 mod scanline;
 
+pub use conform::conform;
 pub use point::{Bounds, Point};
 pub use region::{Polygon, Region};
 pub use scanline::{Intervals, covered};

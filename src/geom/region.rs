@@ -20,7 +20,7 @@ pub type Polygon = Vec<Vec<Point>>;
 /// A set of disjoint polygons with holes, vertices in nm on the polygon grid.
 #[derive(Debug, Clone, PartialEq, Default)]
 pub struct Region {
-    polygons: Vec<Polygon>,
+    pub(super) polygons: Vec<Polygon>,
 }
 
 impl Region {

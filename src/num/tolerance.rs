@@ -52,3 +52,21 @@ pub const LAG_LEFT_NM: f64 = 1e-4;
 
 /// Largest distance between a rounded corner and the polygon that stands for it, in nm.
 pub const ARC_SAGITTA_NM: f64 = 0.01;
+
+/// Angle of one chord of a rounded line corner: its polygon is short of the circle by 3.4e-4
+/// of the radius at most.
+pub const CORNER_STEP_RAD: f64 = 3.0 * std::f64::consts::PI / 180.0;
+
+/// Enclosed empty regions thinner than this on average are cracks of rounding, not voids, in nm.
+pub const SLIVER_NM: f64 = 16.0 / GRID_PER_NM;
+
+/// Areas before and after a step balance to within this per length of outline, in nm: the
+/// rounding of vertices to the polygon grid, a few cells.
+pub const AREA_BALANCE_NM: f64 = 4.0 / GRID_PER_NM;
+
+/// Thickness from which a hermetic material is, where the library says nothing, in nm (common
+/// practice for nitrides).
+pub const HERMETIC_FROM_NM: f64 = 10.0;
+
+/// Relative slack when a grown film is held against the thickness from which it is hermetic.
+pub const HERMETIC_SLACK: f64 = 0.01;

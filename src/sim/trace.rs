@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use super::Section;
+use super::{Body, Section};
 use crate::flow::{Site, State};
 use crate::geom::{Point, Region};
 use crate::library::MaterialId;
@@ -60,11 +60,20 @@ pub enum Event {
     Via {
         /// The slot.
         slot: Region,
+        /// Liner and core, for drawing; the section stays as it is without the via.
+        bodies: Vec<Body>,
         /// Index of the line it is meant to land on.
         line: usize,
         /// Voids and their shortest distance to the worst-case slot edge (overlay and half
         /// of the width tolerance included), in nm; negative when it cuts in.
         clearance_nm: Option<f64>,
+    },
+    /// A part of the material to be released had to stay.
+    Trapped {
+        /// The part.
+        region: Region,
+        /// Thickness on its best way out over what may be passed, above 1; `None`: no way out.
+        share: Option<f64>,
     },
     /// The step changed nothing in this cell.
     NoEffect,
