@@ -5,6 +5,8 @@ mod dose;
 mod draw;
 mod error;
 mod fold;
+#[cfg(test)]
+mod hand;
 mod hermetic;
 mod morphology;
 mod operation;
@@ -15,6 +17,8 @@ mod simulator;
 mod spaces;
 mod steps;
 mod surface;
+#[cfg(test)]
+mod tests;
 mod trace;
 
 pub use error::SimError;

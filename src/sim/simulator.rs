@@ -242,7 +242,7 @@ impl Simulator {
     }
 
     fn bench<'a>(&'a self, operation: &Operation, node: &Node) -> Bench<'a> {
-        let blocked = blocked(&operation.spared, &node.section, &node.ambient);
+        let blocked = blocked(&operation.spared, node);
         let ambient = if blocked.is_empty() {
             node.ambient.clone()
         } else {
@@ -348,15 +348,18 @@ fn spared(step: usize, before: &Stage) -> Stage {
     }
 }
 
-/// What of the ambient lies in spared spaces below the surface there.
-fn blocked(spared: &[usize], section: &Section, ambient: &Region) -> Region {
+/// What of the ambient lies in spared spaces, up to a closure width above the surface there: a
+/// mask that costs nothing.
+fn blocked(spared: &[usize], node: &Node) -> Region {
+    let section = &node.section;
     let strips = spared.iter().map(|&space| {
         let x = section.drawn.space(space).x;
         let strip = Region::rectangle(x, [section.bottom(), section.sky()]);
         let surface = section.solid().intersection(&strip).bounds().map_or(0.0, |b| b.max.z);
-        Region::rectangle(x, [section.bottom(), surface])
+        let top = (surface + node.resolution.closure_width_nm).min(section.sky());
+        Region::rectangle(x, [section.bottom(), top])
     });
-    Region::union_all(&strips.collect::<Vec<_>>()).intersection(ambient)
+    Region::union_all(&strips.collect::<Vec<_>>()).intersection(&node.ambient)
 }
 
 /// The event of a void that the ambient reaches now.

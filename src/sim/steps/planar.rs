@@ -41,9 +41,9 @@ pub(super) fn mask(
 
 /// What the ambient reaches within `within`, up to a height that may be above the surface.
 fn open_up_to(z: f64, within: &Region, section: &Section, bench: &Bench) -> Region {
-    let free = above(section.surface_top(), section).union(&above(z, section));
-    let ceiling = above(z, section);
-    bench.ambient.union(&free).difference(&ceiling).intersection(within)
+    let top = section.surface_top();
+    let free = Region::rectangle(section.drawn.walls, [top, z.max(top)]);
+    bench.ambient.union(&free).difference(&above(z, section)).intersection(within)
 }
 
 fn pour(
