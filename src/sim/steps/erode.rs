@@ -7,8 +7,8 @@
 use super::super::error::Fault;
 use super::super::operation::Erode;
 use super::super::{Origin, Section};
-use super::{Bench, Change, pending};
-use crate::front::{Character, Scene, Solid};
+use super::{Bench, Change};
+use crate::front::{self, Character, Scene, Solid};
 use crate::geom::Region;
 use crate::library::MaterialId;
 use crate::num::tolerance::SLIVER_NM;
@@ -16,7 +16,7 @@ use crate::num::tolerance::SLIVER_NM;
 pub(super) fn erode(erode: &Erode, section: &Section, bench: &Bench) -> Result<Change, Fault> {
     let section = deepened(section, erode, erode.depth);
     let (scene, materials) = scene(&section, &erode.rates, bench);
-    let erosion = pending::erode(&scene, &erode.character, erode.depth, &bench.resolution)?;
+    let erosion = front::erode(&scene, &erode.character, erode.depth, &bench.resolution)?;
     let mut change = Change::of(&section);
     for (material, removed) in materials.iter().zip(&erosion.removed) {
         change.remove(removed, |body| body.material == *material);
@@ -48,7 +48,7 @@ pub(in super::super) fn reach(
     if stops.is_empty() {
         return Ok(None);
     }
-    pending::depth_to_reach(&scene, &erode.character, &stops, limit, &bench.resolution)
+    Ok(front::depth_to_reach(&scene, &erode.character, &stops, limit, &bench.resolution)?)
 }
 
 pub(super) fn convert(
@@ -61,7 +61,7 @@ pub(super) fn convert(
     let mut rates = vec![0.0; bench.library.materials.len()];
     rates[from.0] = 1.0;
     let (scene, materials) = scene(section, &rates, bench);
-    let erosion = pending::erode(&scene, &character, depth, &bench.resolution)?;
+    let erosion = front::erode(&scene, &character, depth, &bench.resolution)?;
     let mut change = Change::of(section);
     for (material, reached) in materials.iter().zip(&erosion.removed) {
         if *material != from || reached.is_empty() {
