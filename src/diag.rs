@@ -69,15 +69,46 @@ impl Diagnostic {
 
 /// The known word that a misspelt one most likely stands for; `None` when none is near.
 ///
-/// Nearness is the Damerau–Levenshtein distance, case ignored, at most a third of the word's
-/// length but at least one; the first of equally near words is taken.
+/// A third of the longer word's letters may differ (at least one), counted by insertions,
+/// deletions, exchanges of one letter and swaps of two neighbours; capitals count nothing. The
+/// first of equals wins.
 pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Option<&'a str> {
-    let word = word.to_lowercase();
-    let most = (word.chars().count() / 3).max(1);
+    let word: String = word.to_lowercase().chars().take(64).collect();
+    let length = word.chars().count();
     known
         .into_iter()
-        .map(|candidate| (strsim::damerau_levenshtein(&word, &candidate.to_lowercase()), candidate))
-        .filter(|(distance, _)| *distance <= most)
+        .filter_map(|candidate| {
+            let other = candidate.to_lowercase();
+            let other_length = other.chars().count();
+            let allowed = (length.max(other_length) / 3).max(1);
+            let all_new = length.min(other_length) <= 1 && word != other;
+            if length.abs_diff(other_length) > allowed || all_new {
+                return None;
+            }
+            let distance = strsim::osa_distance(&word, &other);
+            (distance <= allowed).then_some((distance, candidate))
+        })
         .min_by_key(|(distance, _)| *distance)
         .map(|(_, candidate)| candidate)
+}
+
+#[cfg(test)]
+mod tests {
+
+    use super::nearest;
+
+    #[test]
+    fn finds_the_word_that_was_meant() {
+        let known = ["deposit", "seal", "etch", "polish"];
+        assert_eq!(nearest("depsoit", known), Some("deposit"));
+        assert_eq!(nearest("Etch", known), Some("etch"));
+        assert_eq!(nearest("etsch", known), Some("etch"));
+        assert_eq!(nearest("implant", known), None);
+        assert_eq!(nearest("", known), None);
+    }
+
+    #[test]
+    fn one_letter_is_no_misspelling_of_another() {
+        assert_eq!(nearest("x", ["A", "C"]), None);
+    }
 }

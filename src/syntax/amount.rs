@@ -2,13 +2,13 @@
 
 use super::cursor::{Cursor, Parsed};
 use super::lex::TokenKind;
-use super::nearest::nearest;
 use super::sizes::{
     MAX_LENGTH_NM, MAX_LOAD_AF, MAX_NET_LENGTH_NM, MAX_OVERETCH, MAX_RESISTANCE_OHM, MAX_TAPER_DEG,
     MAX_TEMPERATURE_C, MAX_TIME_S, MIN_LENGTH_NM,
 };
 use super::tree::{Number, Written};
 use crate::diag::Diagnostic;
+use crate::diag::nearest;
 use crate::source::{Span, Spanned};
 use crate::units::{Amount, Dimensioned, Unit, UnitKind};
 

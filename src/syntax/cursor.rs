@@ -1,10 +1,10 @@
 //! Walks the tokens of one statement, notes how they are laid out, and words what is missing.
 
 use super::lex::{Token, TokenKind};
-use super::nearest::nearest;
 use super::tree::{Gap, Name, Op, Piece};
 use super::words::{is_name, is_reserved};
 use crate::diag::Diagnostic;
+use crate::diag::nearest;
 use crate::source::{Span, Spanned};
 
 /// What reading a part of a statement gives: the part, or the statement's one message.

@@ -7,7 +7,6 @@
 mod amount;
 mod cursor;
 mod lex;
-mod nearest;
 mod parse;
 mod place;
 mod sections;
@@ -19,7 +18,6 @@ mod wafer;
 mod words;
 
 pub use lex::{Token, TokenKind};
-pub use nearest::nearest;
 pub use parse::parse;
 pub use sizes::*;
 pub use tidy::{line_text, tidy};

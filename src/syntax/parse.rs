@@ -5,7 +5,6 @@
 
 use super::cursor::{Cursor, Parsed};
 use super::lex::{LogicalLine, Token, TokenKind, logical_line};
-use super::nearest::nearest;
 use super::sections::{
     flow_statement, limit_statement, net_statement, split_statement, use_statement,
     waiver_statement,
@@ -15,6 +14,7 @@ use super::step::step_statement;
 use super::tree::{Broken, Content, Line, Statement, Tree};
 use super::wafer::wafer_statement;
 use super::words::{STATES, Section, WAFER_WORDS};
+use crate::diag::nearest;
 use crate::diag::{Diagnostic, Severity};
 use crate::source::{Source, Span};
 

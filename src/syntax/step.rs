@@ -3,10 +3,10 @@
 use super::amount::Scale;
 use super::cursor::{Cursor, Parsed, once};
 use super::lex::TokenKind;
-use super::nearest::nearest;
 use super::tree::{Action, Film, Form, Gap, Height, Name, Op, Site, StepStatement, With, Written};
 use super::words::{SELECTIVE_VERBS, STEP_VERBS};
 use crate::diag::Diagnostic;
+use crate::diag::nearest;
 use crate::source::Spanned;
 use crate::units::{Duration, Length, Share, Temperature};
 

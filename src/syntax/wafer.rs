@@ -2,10 +2,10 @@
 
 use super::amount::Scale;
 use super::cursor::{Cursor, Parsed, once};
-use super::nearest::nearest;
 use super::tree::{Film, Gap, Lines, Row, Spaces, WaferStatement};
 use super::words::WAFER_WORDS;
 use crate::diag::Diagnostic;
+use crate::diag::nearest;
 use crate::units::Length;
 
 /// Reads a statement of `wafer`.

@@ -3,11 +3,11 @@
 use std::collections::{BTreeMap, BTreeSet};
 use std::sync::Arc;
 
-use crate::diag::Diagnostic;
+use crate::diag::{Diagnostic, nearest};
 use crate::flow::{Quantity, State};
 use crate::library::{Library, Material, MaterialId, Process, Verb};
 use crate::source::{Source, Span};
-use crate::syntax::{self, Name, nearest};
+use crate::syntax::Name;
 
 /// The library, the text, and the messages so far.
 pub(super) struct Context<'a> {
@@ -226,7 +226,7 @@ pub(super) fn unknown<'k>(
 ) -> Diagnostic {
     let known: Vec<&str> = known.into_iter().collect();
     let message = Diagnostic::error(name.span, message);
-    match syntax::nearest(&name.value, known.iter().copied()) {
+    match nearest(&name.value, known.iter().copied()) {
         Some(meant) => message.label(format!("did you mean `{meant}`?")),
         None if known.is_empty() => message.label(format!("the flow has no {what}")),
         None => message.label(format!("known are {}", known.join(", "))),

@@ -3,10 +3,10 @@
 use super::context::{Context, state, unknown};
 use super::draft::Draft;
 use super::sites::Places;
-use crate::diag::Diagnostic;
+use crate::diag::{Diagnostic, nearest};
 use crate::flow::{Against, Claim, Dimension, Limit, Net, Quantity, Variant, Waiver};
 use crate::source::Span;
-use crate::syntax::{self, Bound, LimitStatement, Name, line_text};
+use crate::syntax::{Bound, LimitStatement, Name, line_text};
 use crate::units::{Unit, UnitKind};
 
 /// Resolves the statements of `limits`.
@@ -96,7 +96,7 @@ impl Resolver<'_, '_, '_> {
                     subject.span,
                     format!("`{}` is neither a quantity nor a state", subject.value),
                 );
-                let meant = syntax::nearest(&subject.value, known.iter().copied());
+                let meant = nearest(&subject.value, known.iter().copied());
                 self.context.say(match meant {
                     Some(meant) => message.label(format!("did you mean `{meant}`?")),
                     None => message.label("not known here").help(format!(
@@ -295,7 +295,7 @@ impl Resolver<'_, '_, '_> {
                 if !self.draft.unread.may_name(&name.value) {
                     let splits = self.draft.splits.iter().map(|split| split.name.value.as_str());
                     let materials = self.context.library.materials.iter().map(|m| m.name.as_str());
-                    let meant = syntax::nearest(&name.value, splits.chain(materials));
+                    let meant = nearest(&name.value, splits.chain(materials));
                     let message = Diagnostic::error(
                         name.span,
                         format!("`{}` is neither a split nor a material", name.value),

@@ -1,10 +1,10 @@
 //! `with`: numbers of a process, for one step.
 
 use super::context::Context;
-use crate::diag::Diagnostic;
+use crate::diag::{Diagnostic, nearest};
 use crate::flow::Override;
 use crate::library::{self, Bounds, NumberKey, Process, Ranged};
-use crate::syntax::{Number, With, nearest};
+use crate::syntax::{Number, With};
 use crate::units::{Pressure, Unit, UnitKind};
 
 /// Applies the overrides of a step to its copy of a process; `None` where one is wrong.
