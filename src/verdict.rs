@@ -1,13 +1,14 @@
 //! Limit × figures → holds, broken, or cannot tell; and the verdict over all of them.
 //!
-//! Pure functions. What the figures are comes through [`Figures`]; a figure whose bounds straddle
+//! Pure functions. What the figures are comes through
+//! [`Figures`]; a figure whose bounds straddle
 //! its limit is never a pass.
 
 use schemars::JsonSchema;
 use serde::Serialize;
 
-use crate::flow::{Against, Claim, Dimension, Flow, Limit, Quantity, Site, State, Variant};
-use crate::measure::{Figure, Missing, Reading, for_all, site_states};
+use crate::flow::{Claim, Dimension, Flow, Limit, Quantity, Site, State, Variant};
+use crate::measure::{Figure, Figures, Missing, Question, Reading, for_all, site_states};
 
 /// Whether a flow holds.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, JsonSchema)]
@@ -44,35 +45,6 @@ pub struct LimitReport {
     pub margin: Option<f64>,
     /// What a reader must know of this verdict (judged at nominal values, solid space …).
     pub note: Option<String>,
-}
-
-/// What a limit asks for.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Question<'a> {
-    /// The quantity.
-    pub quantity: Quantity,
-    /// Where; `None` for one of the whole flow or of a net.
-    pub site: Option<&'a Site>,
-    /// Of which net, by its index.
-    pub net: Option<usize>,
-    /// After which operation; `None`: of the finished flow.
-    pub after: Option<u32>,
-    /// Between the layers of which name.
-    pub between: Option<&'a str>,
-    /// Against what.
-    pub against: Option<&'a Against>,
-}
-
-/// Where the figures of one variant come from.
-pub trait Figures {
-    /// All sites of the variant, in the order of the text.
-    fn sites(&self) -> Vec<Site>;
-
-    /// The states that each side of a site may be in; `None` where the variant lacks the site or the operation.
-    fn states(&self, site: &Site, after: Option<u32>) -> Option<Vec<Vec<State>>>;
-
-    /// What is known of a quantity, on each side of a site; `None` as for the states.
-    fn readings(&self, question: &Question) -> Option<Vec<Reading>>;
 }
 
 /// Judges all limits of a flow on one variant, in the order of the text, one entry a site.
@@ -128,7 +100,7 @@ fn limit_on(limit: &Limit, figures: &dyn Figures) -> Vec<(Option<Site>, Judgemen
         Claim::Bound { quantity, at_most, amount } => {
             let bound = Bound { at_most, amount };
             if limit.for_net.is_some() || quantity == Quantity::PeakTemperature {
-                let readings = figures.readings(&question(limit, quantity, None));
+                let readings = figures.readings(&Question::of(limit, quantity, None));
                 let sides = readings.unwrap_or_default();
                 return worst(sides.into_iter().map(|reading| on_bound(bound, reading, &[])))
                     .map(|judgement| (None, judgement))
@@ -150,7 +122,7 @@ fn on_sites(
 ) -> Vec<(Option<Site>, Judgement)> {
     let sites = limit.at.clone().unwrap_or_else(|| figures.sites());
     let judged = |site: Site| {
-        let readings = figures.readings(&question(limit, quantity, Some(&site)))?;
+        let readings = figures.readings(&Question::of(limit, quantity, Some(&site)))?;
         let states = figures.states(&site, limit.after)?;
         let all = site_states(&states);
         let by_side = readings.len() == states.len();
@@ -169,17 +141,6 @@ fn on_sites(
         worst(missing.into_iter().map(|(_, j)| j)).map(|j| (None, j)).into_iter().collect()
     } else {
         existing
-    }
-}
-
-fn question<'a>(limit: &'a Limit, quantity: Quantity, site: Option<&'a Site>) -> Question<'a> {
-    Question {
-        quantity,
-        site,
-        net: limit.for_net,
-        after: limit.after,
-        between: limit.between.as_deref(),
-        against: limit.against.as_ref(),
     }
 }
 
@@ -257,6 +218,7 @@ fn without(missing: Missing, states: &[State]) -> Option<bool> {
         }
         Missing::NoCorner
         | Missing::NoConductor
+        | Missing::Shorted
         | Missing::NoSuchElectrode
         | Missing::NoGround
         | Missing::NoReference

@@ -11,7 +11,9 @@ mod geometry;
 #[cfg(test)]
 pub(crate) mod hand;
 mod model;
+mod pages;
 mod polish;
+mod question;
 mod reading;
 mod seal;
 mod site;
@@ -21,6 +23,8 @@ mod void;
 
 pub use geometry::{Geometry, Traced, for_all, site_states};
 pub use model::*;
+pub use pages::page;
+pub use question::{Figures, Question};
 pub use reading::{Missing, Reading, Unclear};
 pub use site::{Extras, site};
 

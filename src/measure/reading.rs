@@ -47,6 +47,8 @@ pub enum Missing {
     NoCorner,
     /// No conductor in the line.
     NoConductor,
+    /// Metal joins the line with its neighbour, a plane or bulk.
+    Shorted,
     /// No electrode of that name in the line.
     NoSuchElectrode,
     /// No plane, bulk or next level takes the field.
@@ -74,6 +76,7 @@ impl fmt::Display for Missing {
             Self::NothingEmpty => "nothing in the space is empty",
             Self::NoCorner => "the line has no top corner left",
             Self::NoConductor => "the line has no conductor",
+            Self::Shorted => "metal joins the line with its neighbour, a plane or bulk",
             Self::NoSuchElectrode => "the line has no electrode of that name",
             Self::NoGround => "there is no plane, bulk or next level",
             Self::NoReference => "there is nothing to compare with: no `between`, no roof",

@@ -3,7 +3,7 @@
 use super::view::Window;
 use crate::flow::{Action, State, Variant};
 use crate::geom::{Point, Region};
-use crate::sim::{Event, Origin, Section, Stage};
+use crate::sim::{Body, Event, Origin, Section, Stage};
 
 /// How a space was closed.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -67,15 +67,23 @@ fn closure_nm(stage: &Stage, index: usize, line_top: f64) -> Option<f64> {
 /// The step that made the body right above the highest void of a space.
 fn roof_step(section: &Section, index: usize) -> Option<usize> {
     let window = Window::of(&section.drawn, index);
-    let tops = section.voids.iter().flat_map(Region::rings).flatten().copied();
-    let top = tops.filter(|p| window.holds(*p)).max_by(|a, b| a.z.total_cmp(&b.z))?;
-    let above = Point::new(top.x, top.z + ABOVE_NM);
-    let body = section.bodies.iter().find(|body| body.region.contains(above))?;
-    match body.origin {
+    let here = section.voids.iter().filter(|void| !window.view(void).is_empty());
+    let top = |void: &Region| void.bounds().map_or(f64::NEG_INFINITY, |bounds| bounds.max.z);
+    let highest = here.max_by(|a, b| top(a).total_cmp(&top(b)))?;
+    match roof_body(section, highest)?.origin {
         Origin::Step(step) => Some(step),
         _ => None,
     }
 }
 
-/// How far above the top of a void its roof is looked up, in nm.
+/// The body right above the highest point of a void.
+pub(super) fn roof_body<'a>(section: &'a Section, void: &Region) -> Option<&'a Body> {
+    let top = void.rings().flatten().max_by(|a, b| a.z.total_cmp(&b.z))?;
+    let [left, right] = section.drawn.walls;
+    let x = top.x.clamp(left + ABOVE_NM, right - ABOVE_NM);
+    let above = Point::new(x, top.z + ABOVE_NM);
+    section.bodies.iter().find(|body| body.region.contains(above))
+}
+
+/// How far above the top of a void, and inside the walls, its roof is looked up, in nm.
 const ABOVE_NM: f64 = 1e-3;

@@ -121,7 +121,7 @@ impl View {
             solid: window.view(&solid),
             lines: window.view(&lines),
             voids: parts,
-            ambient: window.view(&ambient(section, &solid, &voids)),
+            ambient: window.view(&ambient(section)),
         }
     }
 
@@ -167,13 +167,13 @@ fn sides(drawn: &Drawn, index: usize, window: &Window, of: fn(&DrawnLine) -> [f6
 }
 
 /// What the ambient of a section reaches, up to a little above its highest solid.
-fn ambient(section: &Section, solid: &Region, voids: &Region) -> Region {
+pub(super) fn ambient(section: &Section) -> Region {
+    let solid = Region::union_all(section.bodies.iter().map(|body| &body.region));
     let Some(bounds) = solid.bounds() else { return Region::empty() };
     let sky = bounds.max.z + SKY_NM;
-    let [left, right] = section.drawn.walls;
-    let rest =
-        Region::rectangle([left, right], [bounds.min.z, sky]).difference(solid).difference(voids);
-    let open =
-        rest.parts().filter(|part| part.bounds().is_some_and(|b| b.max.z >= sky - SKY_NM / 2.0));
-    Region::union_all(open.collect::<Vec<_>>().iter())
+    let rest = Region::rectangle(section.drawn.walls, [bounds.min.z, sky])
+        .difference(&solid)
+        .difference(&Region::union_all(section.voids.iter()));
+    let reaches_sky = |part: &Region| part.bounds().is_some_and(|b| b.max.z >= sky - SKY_NM / 2.0);
+    Region::union_all(rest.parts().filter(reaches_sky).collect::<Vec<_>>().iter())
 }
