@@ -3,7 +3,26 @@
 //!
 //! Plain numbers only: permittivities are relative, results are C′/ε0 times ε0 in aF/µm.
 
+mod arrangement;
+mod assembly;
+mod bounds;
+mod delaunay;
+mod domain;
+mod dual;
+mod elements;
+mod error;
+mod mixture;
+mod outline;
+mod primal;
+mod refinement;
+mod section;
+mod solve;
+mod triangulation;
+
 use crate::geom::Region;
+
+pub use error::FieldError;
+pub use solve::{solve, solve_variants};
 
 /// Vacuum permittivity in aF/µm (CODATA 2018: 8.8541878128e-12 F/m).
 pub const EPSILON_0_AF_PER_UM: f64 = 8.854_187_812_8;

@@ -70,3 +70,21 @@ pub const HERMETIC_FROM_NM: f64 = 10.0;
 
 /// Relative slack when a grown film is held against the thickness from which it is hermetic.
 pub const HERMETIC_SLACK: f64 = 0.01;
+
+/// Cells of the field's noding grid across the longer side of a section: outlines move by
+/// less than a cell, two parts in a million of that side.
+pub const FIELD_CELLS: f64 = 1_048_576.0;
+
+/// Outlines are thinned for the field by at most this part of the section's shorter side, at
+/// an accuracy of half a per cent or coarser; in proportion to the accuracy below that.
+pub const FIELD_OUTLINE: f64 = 2e-5;
+
+/// Triangles whose longest side is below this part of the section's shorter side may be as
+/// slender as they are: the field's mesh runs into a cusp or a film only down to here.
+pub const FIELD_FLOOR: f64 = 5e-4;
+
+/// Triangles that a field mesh may have at most.
+pub const FIELD_TRIANGLES: usize = 200_000;
+
+/// Relative slack of an inequality that holds exactly but for rounding.
+pub const FIELD_ROUNDING: f64 = 1e-9;

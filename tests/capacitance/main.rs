@@ -1,0 +1,4 @@
+//! Capacitance against values from outside: closed forms, integral equations, finite elements.
+
+mod closed_forms;
+mod sections;
