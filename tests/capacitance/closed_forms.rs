@@ -47,6 +47,31 @@ fn square_coaxial_line() {
     }
 }
 
+/// Circles of radius 1 and 2, coaxial: 2π / ln 2 = 9.064720. Polygons of n sides have the
+/// capacitance of circles of their conformal radius; with the vertices of the inner one on the
+/// circle it is smaller by at most the sagitta, with the sides of the outer one on the circle
+/// larger, so the polygons give less.
+#[test]
+fn coaxial_circles() {
+    let (n, r) = (720, 50.0);
+    let around = 2.0 * r / (std::f64::consts::PI / f64::from(n)).cos();
+    let outer = Region::rectangle([-110.0, 110.0], [-110.0, 110.0]).difference(&ellipse(
+        [0.0, 0.0],
+        [around; 2],
+        n as usize,
+    ));
+    let problem = closed(
+        [-110.0, 110.0],
+        [-110.0, 110.0],
+        2,
+        vec![
+            body(outer, Role::Electrode(0)),
+            body(ellipse([0.0, 0.0], [r; 2], n as usize), Role::Electrode(1)),
+        ],
+    );
+    hold(entry(&solve(&problem, 1e-3).unwrap(), 0, 0), 9.064720);
+}
+
 /// A section of seven lines with liners and voids under an open top has a proof of 0.5 %.
 #[test]
 fn seven_lines_with_voids_converge() {
