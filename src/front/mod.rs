@@ -4,15 +4,23 @@
 //! the boundary of the solid regions that the ambient reaches; upright mirror walls bound the
 //! scene left and right, the sky is above, and solid or a mirror is below.
 
+mod advance;
+mod closure;
 mod directional;
 mod erode;
 mod exchange;
+mod grow;
 mod outline;
+mod remesh;
+mod seam;
+mod surface;
+mod throat;
 mod transport;
 mod visibility;
 
 pub use erode::{depth_to_reach, erode, penetrate};
 pub use exchange::Exchange;
+pub use grow::grow;
 pub use outline::{Facet, Outline};
 pub use transport::{Arrival, Transport};
 

@@ -53,6 +53,15 @@ impl Region {
         Self::from_grid(overlay.overlay(OverlayRule::Subject, FillRule::EvenOdd))
     }
 
+    /// All points about which the rings together wind at least once counter-clockwise: what a
+    /// ring that crosses itself encloses the wrong way round is left out (positive rule).
+    pub fn from_rings_positive(rings: impl IntoIterator<Item = Vec<Point>>) -> Self {
+        let rings: Vec<_> = rings.into_iter().collect();
+        let mut overlay =
+            Overlay::<i64>::from_subj_and_clip(&to_grid(rings.iter())[..], &[] as &[Path]);
+        Self::from_grid(overlay.overlay(OverlayRule::Subject, FillRule::Positive))
+    }
+
     /// Points in this region, in the other, or in both.
     pub fn union(&self, other: &Self) -> Self {
         self.boolean(other, OverlayRule::Union)

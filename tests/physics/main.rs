@@ -1,4 +1,6 @@
 //! Outside checks of growth and removal: closed forms, converged integral equations, and two
 //! independent methods. Each test names its source.
 
+mod dense_array;
 mod flux;
+mod scenes;

@@ -1,0 +1,218 @@
+//! One step of the surface: every facet offset along its normal by its own rate.
+//!
+//! Method: front tracking with facets (the string method of Jewett, Hagouel, Neureuther and Van
+//! Duzer (Polym. Eng. Sci. 17, 381 (1977)) with facets instead of points). Vertices move to where offset facets meet. At
+//! corners that is the intersection of the two offset lines: it makes a fan of facets at a
+//! convex corner the envelope of its planes (exact for a rate that depends on direction), and
+//! a concave one lose its facets. On a smooth surface the intersection is ill-conditioned and
+//! only slides the vertex along the surface, which changes nothing; there the vertex takes the
+//! rate interpolated between the middles of its neighbours, and facets turn with the rates. Between
+//! the two the slide is blended, and bounded by the thickness of the step (a rate of ±1 per radian is
+//! the most that an isotropic arrival can show). Facets that would turn over are removed and their
+//! neighbours extended until they meet. Cost: linear. Steps must stay well below the width
+//! of any throat, or fronts pass through each other.
+
+use super::surface::{Chain, Piece, Surface};
+use crate::geom::Point;
+
+/// Turns between which the slide along the surface is blended in: convex, then concave, radians.
+const CONVEX_BLEND: [f64; 2] = [0.015, 0.03];
+const CONCAVE_BLEND: [f64; 2] = [0.17, 0.5];
+
+/// Sharper wedges at a mirror wall than this slope do not move faster along it.
+const STEEPEST: f64 = 0.02;
+
+/// The surface after `thickness` more on an open flat, at its present rates.
+pub(super) fn advanced(surface: &Surface, thickness: f64) -> Surface {
+    let chains = surface.chains.iter().map(|chain| advance(chain, thickness));
+    Surface { chains: chains.filter(|c| !c.pieces.is_empty()).collect(), walls: surface.walls }
+}
+
+fn advance(chain: &Chain, thickness: f64) -> Chain {
+    let pieces = &chain.pieces;
+    let n = pieces.len();
+    let mut links: Vec<Link> = pieces
+        .iter()
+        .enumerate()
+        .map(|(k, piece)| {
+            let before =
+                if k > 0 { Some(&pieces[k - 1]) } else { pieces.last().filter(|_| chain.closed) };
+            let from = match before {
+                Some(before) => vertex(before, piece, thickness),
+                None => wall_vertex(piece, piece.facet.from, thickness),
+            };
+            Link { piece: *piece, from }
+        })
+        .collect();
+    let mut end = if chain.closed {
+        links[0].from
+    } else {
+        wall_vertex(&pieces[n - 1], pieces[n - 1].facet.to, thickness)
+    };
+    let mut end_seam = chain.end_seam;
+    remove_turned(&mut links, &mut end, &mut end_seam, chain.closed, thickness);
+    let tos: Vec<Point> = links.iter().skip(1).map(|l| l.from).chain([end]).collect();
+    let pieces = links.iter().zip(tos).map(|(l, to)| l.piece.with_ends(l.from, to)).collect();
+    Chain { pieces, closed: chain.closed, end_seam }
+}
+
+/// A piece before the step and where it begins after it.
+#[derive(Clone, Copy)]
+struct Link {
+    piece: Piece,
+    from: Point,
+}
+
+/// Where the offset facets of two neighbours meet.
+fn vertex(a: &Piece, b: &Piece, thickness: f64) -> Point {
+    let at = b.facet.from;
+    let (n, m) = (a.facet.normal, b.facet.normal);
+    let sum = n + m;
+    let size = sum.norm();
+    // Half of the turn, positive when convex (the surface turns clockwise).
+    let half = 0.5 * m.cross(n).atan2(n.dot(m));
+    if size < 1e-6 {
+        return at + n * (0.5 * thickness * (a.rate + b.rate));
+    }
+    let normal = sum * (1.0 / size);
+    let tangent = Point::new(normal.z, -normal.x);
+    let sharpness =
+        if half > 0.0 { ramp(2.0 * half, CONVEX_BLEND) } else { ramp(-2.0 * half, CONCAVE_BLEND) };
+    let (la, lb) = (a.facet.length(), b.facet.length());
+    let mean = 0.5 * (a.rate + b.rate);
+    let between = if la + lb > 0.0 { (a.rate * lb + b.rate * la) / (la + lb) } else { mean };
+    let rate = sharpness * mean + (1.0 - sharpness) * between;
+    let mut slide = 0.0;
+    if sharpness > 0.0 {
+        slide = sharpness * (b.rate - a.rate) / (2.0 * half.sin());
+        if half > 0.0 {
+            let most = a.rate.max(b.rate).max(1.0);
+            slide = slide.clamp(-most, most);
+        }
+    }
+    at + normal * (thickness * rate / half.cos()) + tangent * (thickness * slide)
+}
+
+fn ramp(value: f64, [from, to]: [f64; 2]) -> f64 {
+    ((value - from) / (to - from)).clamp(0.0, 1.0)
+}
+
+/// Where an offset facet meets the mirror wall that it ends at.
+fn wall_vertex(piece: &Piece, at: Point, thickness: f64) -> Point {
+    let slope = piece.facet.normal.z;
+    let slope = if slope.abs() < STEEPEST { STEEPEST.copysign(slope) } else { slope };
+    Point::new(at.x, at.z + thickness * piece.rate / slope)
+}
+
+/// Removes pieces that have turned over, until none is left.
+fn remove_turned(
+    links: &mut Vec<Link>,
+    end: &mut Point,
+    end_seam: &mut Option<usize>,
+    closed: bool,
+    thickness: f64,
+) {
+    let mut k = 0;
+    while k < links.len() && links.len() > 1 {
+        let to = if k + 1 < links.len() { links[k + 1].from } else { *end };
+        let normal = links[k].piece.facet.normal;
+        let along = Point::new(normal.z, -normal.x);
+        if (to - links[k].from).dot(along) >= -1e-12 {
+            k += 1;
+            continue;
+        }
+        let last = k + 1 == links.len();
+        let middle = (links[k].from + to) * 0.5;
+        let gone = links.remove(k);
+        if k < links.len() && links[k].piece.seam.is_none() {
+            links[k].piece.seam = gone.piece.seam;
+        }
+        if !closed && (k == 0 || last) {
+            // At a wall the neighbour is extended to it.
+            if k == 0 {
+                links[0].from =
+                    meets_wall(&links[0].piece, gone.piece.facet.from.x, middle, thickness);
+            } else {
+                let neighbour = links[k - 1].piece;
+                *end = meets_wall(&neighbour, gone.piece.facet.to.x, middle, thickness);
+                *end_seam = end_seam.or(gone.piece.seam);
+            }
+        } else {
+            let next = if last { 0 } else { k };
+            let before = if k == 0 { links.len() - 1 } else { k - 1 };
+            let met = meeting(&links[before].piece, &links[next].piece, middle, thickness);
+            links[next].from = met;
+            if closed && next == 0 {
+                *end = met;
+            }
+        }
+        k = k.saturating_sub(2);
+    }
+}
+
+/// The crossing of two offset lines; near `fallback` when they are all but parallel.
+fn meeting(a: &Piece, b: &Piece, fallback: Point, thickness: f64) -> Point {
+    let (n, m) = (a.facet.normal, b.facet.normal);
+    let sine = n.cross(m);
+    if sine.abs() < 0.02 {
+        return fallback;
+    }
+    let c = n.dot(a.facet.from) + a.rate * thickness;
+    let d = m.dot(b.facet.from) + b.rate * thickness;
+    Point::new((c * m.z - d * n.z) / sine, (n.x * d - m.x * c) / sine)
+}
+
+fn meets_wall(piece: &Piece, x: f64, fallback: Point, thickness: f64) -> Point {
+    let n = piece.facet.normal;
+    if n.z.abs() < STEEPEST {
+        return Point::new(x, fallback.z);
+    }
+    let offset = n.dot(piece.facet.from) + piece.rate * thickness;
+    Point::new(x, (offset - n.x * x) / n.z)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::front::outline::Facet;
+
+    fn chain(points: &[(f64, f64)], rates: &[f64]) -> Chain {
+        let piece = |(p, rate): (&[(f64, f64)], &f64)| Piece {
+            rate: *rate,
+            ..Piece::new(Facet::between(Point::new(p[0].0, p[0].1), Point::new(p[1].0, p[1].1), 0))
+        };
+        let pieces = points.windows(2).zip(rates).map(piece).collect();
+        Chain { pieces, closed: false, end_seam: None }
+    }
+
+    fn moved(points: &[(f64, f64)], rates: &[f64], by: f64) -> Vec<(f64, f64)> {
+        advance(&chain(points, rates), by).points().map(|p| (p.x, p.z)).collect()
+    }
+
+    #[test]
+    fn a_trench_keeps_its_corners() {
+        let points = [(0.0, 5.0), (2.0, 5.0), (2.0, 0.0), (9.0, 0.0)];
+        let after = moved(&points, &[1.0, 0.5, 0.25], 1.0);
+        let exact = [(0.0, 6.0), (2.5, 6.0), (2.5, 0.25), (9.0, 0.25)];
+        for (a, b) in after.iter().zip(exact) {
+            assert!((a.0 - b.0).abs() + (a.1 - b.1).abs() < 1e-12, "{after:?}");
+        }
+    }
+
+    #[test]
+    fn a_floor_that_is_overgrown_disappears() {
+        // A V with a narrow floor: sides close over it and meet where their lines cross.
+        let points = [(0.0, 10.0), (4.5, 1.0), (5.5, 1.0), (10.0, 10.0)];
+        let after = moved(&points, &[1.0, 0.0, 1.0], 1.0);
+        assert_eq!(after.len(), 3);
+        assert!((after[1].0 - 5.0).abs() < 1e-12 && after[1].1 > 1.0, "{after:?}");
+    }
+
+    #[test]
+    fn the_wall_takes_over_when_the_last_piece_is_overgrown() {
+        let points = [(0.0, 10.0), (4.5, 1.0), (5.0, 1.0)];
+        let after = moved(&points, &[1.0, 0.0], 1.0);
+        assert_eq!(after.len(), 2);
+        assert!(after[1].0 == 5.0 && after[1].1 > 1.0, "{after:?}");
+    }
+}

@@ -1,0 +1,203 @@
+//! Facets of the size that the flux needs, and fans at convex corners.
+//!
+//! A convex corner opens into a fan: pieces without length whose normals turn from one side to the
+//! other in equal steps; the next step of the surface gives them theirs. Where the solid changes and
+//! one side grows faster, the fan of the faster film turns on until it stands upright on the slower
+//! surface: it grows over it like any edge. Long pieces are split evenly, short ones joined to a
+//! neighbour when the turn between them is slight. The size wanted is `facet_nm`, less near
+//! throats in proportion to their width. Cost: linear, times throats.
+
+use super::outline::Facet;
+use super::surface::{Chain, Piece, Surface};
+use super::throat::Narrow;
+use crate::geom::Point;
+
+/// How the surface is cut into facets.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Mesh {
+    /// Facet length on the open surface, in nm.
+    pub(super) facet_nm: f64,
+    /// Facet length in a throat that is about to close, in nm.
+    pub(super) least_nm: f64,
+    /// Turn between neighbours of a fan, in radians.
+    pub(super) fan_rad: f64,
+}
+
+/// Facets in a throat over its width.
+const THROAT_SHARE: f64 = 0.12;
+/// Growth of the facet length with distance from a throat.
+const GRADING: f64 = 0.15;
+/// Longer than this times the wanted length is split, shorter than that is joined.
+const SPLIT: f64 = 1.4;
+const JOIN: f64 = 0.45;
+/// Most turn at a point that joining may remove, in fan steps.
+const JOIN_TURN: f64 = 1.2;
+
+impl Mesh {
+    /// Facet length wanted at a point.
+    pub(super) fn size_at(&self, p: Point, throats: &[Narrow]) -> f64 {
+        throats.iter().fold(self.facet_nm, |size, throat| {
+            let there = (THROAT_SHARE * throat.width).max(self.least_nm);
+            let away = (p.distance(throat.middle) - 0.5 * throat.width).max(0.0);
+            size.min(there + GRADING * away)
+        })
+    }
+
+    /// Opens a fan at every convex corner, also at those that mirrors make.
+    pub(super) fn open_corners(&self, surface: &mut Surface, solid_rates: &[f64]) {
+        for chain in &mut surface.chains {
+            self.open_chain(chain, solid_rates);
+        }
+    }
+
+    fn open_chain(&self, chain: &mut Chain, solid_rates: &[f64]) {
+        let old = std::mem::take(&mut chain.pieces);
+        let up = Point::new(0.0, 1.0);
+        let mut pieces = Vec::with_capacity(old.len());
+        if let Some(first) = old.first().filter(|_| !chain.closed) {
+            // The mirror image of a surface that falls away from its wall meets it in a peak.
+            if first.facet.normal.z > 0.0 {
+                pieces.extend(self.half_fan(first, first.facet.from, up, first.facet.normal));
+            }
+        }
+        for (k, piece) in old.iter().enumerate() {
+            if k > 0 || chain.closed {
+                let before = if k > 0 { &old[k - 1] } else { &old[old.len() - 1] };
+                pieces.extend(self.fan(before, piece, solid_rates));
+            }
+            pieces.push(*piece);
+        }
+        if let Some(last) = old.last().filter(|_| !chain.closed) {
+            if last.facet.normal.z > 0.0 {
+                pieces.extend(self.half_fan(last, last.facet.to, last.facet.normal, up));
+            }
+        }
+        chain.pieces = pieces;
+    }
+
+    /// Pieces between two neighbours; none unless the corner is convex or one film is faster.
+    fn fan(&self, a: &Piece, b: &Piece, solid_rates: &[f64]) -> Vec<Piece> {
+        let (n, m) = (a.facet.normal, b.facet.normal);
+        let turn = m.cross(n).atan2(n.dot(m));
+        let (rate_a, rate_b) = (solid_rates[a.facet.solid], solid_rates[b.facet.solid]);
+        let quarter = std::f64::consts::FRAC_PI_2;
+        // The last normal of the faster film stands along the slower surface.
+        if rate_a > rate_b && turn + quarter > 0.0 {
+            return self.sweep(a, b.facet.from, n, turn + quarter, true);
+        }
+        if rate_b > rate_a && turn + quarter > 0.0 {
+            let first = Point::new(-a.facet.normal.z, a.facet.normal.x);
+            return self.sweep(b, b.facet.from, first, turn + quarter, false);
+        }
+        if turn > 1.5 * self.fan_rad {
+            let steps = (turn / self.fan_rad).ceil();
+            return self.arc(a, b.facet.from, n, turn / steps, 1..steps as usize);
+        }
+        Vec::new()
+    }
+
+    /// A fan of the film of `of` whose far end stands on the slower surface.
+    fn sweep(&self, of: &Piece, at: Point, first: Point, turn: f64, from_own: bool) -> Vec<Piece> {
+        if turn < 0.5 * self.fan_rad {
+            return Vec::new();
+        }
+        let steps = (turn / self.fan_rad).ceil();
+        let count = steps as usize;
+        // Without the normal of `of` itself, with the upright one.
+        let range = if from_own { 1..count + 1 } else { 0..count };
+        self.arc(of, at, first, turn / steps, range)
+    }
+
+    /// The half of a fan on this side of a mirror wall.
+    fn half_fan(&self, of: &Piece, at: Point, from: Point, to: Point) -> Vec<Piece> {
+        let turn = to.cross(from).atan2(from.dot(to));
+        if 2.0 * turn <= 1.5 * self.fan_rad {
+            return Vec::new();
+        }
+        let steps = (turn / self.fan_rad).ceil();
+        let count = steps as usize;
+        // The upright facet belongs to both halves.
+        let range = if to.x == 0.0 && to.z == 1.0 { 1..count + 1 } else { 0..count };
+        self.arc(of, at, from, turn / steps, range)
+    }
+
+    /// Pieces without length at a point, their normals turned clockwise from `first`.
+    fn arc(
+        &self,
+        of: &Piece,
+        at: Point,
+        first: Point,
+        step: f64,
+        range: std::ops::Range<usize>,
+    ) -> Vec<Piece> {
+        range
+            .map(|k| {
+                let (sine, cosine) = (step * k as f64).sin_cos();
+                let normal = Point::new(
+                    first.x * cosine + first.z * sine,
+                    first.z * cosine - first.x * sine,
+                );
+                let facet = Facet { from: at, to: at, normal, solid: of.facet.solid };
+                Piece { facet, seam: None, ..*of }
+            })
+            .collect()
+    }
+
+    /// Splits long pieces and joins short ones.
+    pub(super) fn refine(&self, surface: &mut Surface, throats: &[Narrow]) {
+        for chain in &mut surface.chains {
+            self.join(chain, throats);
+            self.split(chain, throats);
+        }
+    }
+
+    fn split(&self, chain: &mut Chain, throats: &[Narrow]) {
+        let mut pieces = Vec::with_capacity(chain.pieces.len());
+        for piece in &chain.pieces {
+            self.halve(*piece, throats, &mut pieces);
+        }
+        chain.pieces = pieces;
+    }
+
+    fn halve(&self, piece: Piece, throats: &[Narrow], into: &mut Vec<Piece>) {
+        let Facet { from, to, .. } = piece.facet;
+        let middle = piece.facet.middle();
+        if piece.facet.length() <= SPLIT * self.size_at(middle, throats) {
+            into.push(piece);
+            return;
+        }
+        // Halves keep the direction of the whole: an exact line stays one.
+        let part =
+            |from: Point, to: Point| Piece { facet: Facet { from, to, ..piece.facet }, ..piece };
+        self.halve(part(from, middle), throats, into);
+        self.halve(Piece { seam: None, ..part(middle, to) }, throats, into);
+    }
+
+    fn join(&self, chain: &mut Chain, throats: &[Narrow]) {
+        let mut pieces: Vec<Piece> = Vec::with_capacity(chain.pieces.len());
+        for next in &chain.pieces {
+            let Some(last) = pieces.last_mut() else {
+                pieces.push(*next);
+                continue;
+            };
+            let (a, b) = (last.facet, next.facet);
+            let (la, lb) = (a.length(), b.length());
+            let size = self.size_at(b.from, throats);
+            let turn = a.normal.cross(b.normal).atan2(a.normal.dot(b.normal)).abs();
+            let slight = turn < JOIN_TURN * self.fan_rad && la > 0.0 && lb > 0.0;
+            let short = la.min(lb) < JOIN * size && la + lb < SPLIT * size;
+            if a.solid == b.solid && next.seam.is_none() && slight && short {
+                let share = la / (la + lb);
+                let joined = last.with_ends(a.from, b.to);
+                *last = Piece {
+                    rate: share * last.rate + (1.0 - share) * next.rate,
+                    gas: share * last.gas + (1.0 - share) * next.gas,
+                    ..joined
+                };
+            } else {
+                pieces.push(*next);
+            }
+        }
+        chain.pieces = pieces;
+    }
+}
