@@ -70,8 +70,8 @@ impl Diagnostic {
 /// The known word that a misspelt one most likely stands for; `None` when none is near.
 ///
 /// A third of the longer word's letters may differ (at least one), counted by insertions,
-/// deletions, exchanges of one letter and swaps of two neighbours; capitals count nothing. The
-/// first of equals wins.
+/// deletions, exchanges of one letter and swaps of two neighbours; capitals count nothing. Of
+/// equals the one with as many letters wins, then the first.
 pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Option<&'a str> {
     let word: String = word.to_lowercase().chars().take(64).collect();
     let length = word.chars().count();
@@ -86,15 +86,15 @@ pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Opti
                 return None;
             }
             let distance = strsim::osa_distance(&word, &other);
-            (distance <= allowed).then_some((distance, candidate))
+            let rank = (distance, length.abs_diff(other_length));
+            (distance <= allowed).then_some((rank, candidate))
         })
-        .min_by_key(|(distance, _)| *distance)
+        .min_by_key(|(rank, _)| *rank)
         .map(|(_, candidate)| candidate)
 }
 
 #[cfg(test)]
 mod tests {
-
     use super::nearest;
 
     #[test]

@@ -99,7 +99,7 @@ fn variants(
     let mut variants = vec![];
     for (at, wafer) in wafers.into_iter().enumerate() {
         let split = at.checked_sub(1).map(|at| &draft.splits[at]);
-        context.enter(split.map(|split| split.name.value.clone()));
+        context.enter(split);
         let steps = steps::resolve(draft, split, at, wafer.as_ref(), places, context);
         variants.push(match (wafer, steps) {
             (Some(wafer), Some(steps)) => {

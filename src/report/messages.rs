@@ -13,18 +13,19 @@ const WIDTH: usize = 140;
 /// same on every terminal.
 pub fn render(messages: &[Diagnostic], source: &Source, color: bool) -> String {
     let renderer = if color { Renderer::styled() } else { Renderer::plain() }.term_width(WIDTH);
+    let breaks: Vec<usize> = source.text.match_indices('\n').map(|(at, _)| at).collect();
     let mut out = String::new();
     for message in messages {
         if !out.is_empty() {
             out.push('\n');
         }
-        out.push_str(&renderer.render(&[group(message, source)]));
+        out.push_str(&renderer.render(&[group(message, source, &breaks)]));
         out.push('\n');
     }
     out
 }
 
-fn group<'a>(message: &'a Diagnostic, source: &'a Source) -> Group<'a> {
+fn group<'a>(message: &'a Diagnostic, source: &'a Source, breaks: &[usize]) -> Group<'a> {
     let level = match message.severity {
         Severity::Error => Level::ERROR,
         Severity::Warning => Level::WARNING,
@@ -32,7 +33,7 @@ fn group<'a>(message: &'a Diagnostic, source: &'a Source) -> Group<'a> {
     };
     let title = level.primary_title(message.message.as_str());
     let group = match message.span {
-        Some(span) => title.element(snippet(span, &message.label, source)),
+        Some(span) => title.element(snippet(span, &message.label, source, breaks)),
         None => title.element(annotate_snippets::Origin::path(source.name.as_str())),
     };
     match &message.help {
@@ -42,22 +43,24 @@ fn group<'a>(message: &'a Diagnostic, source: &'a Source) -> Group<'a> {
 }
 
 /// Only the marked lines are handed over: what is far away in a long file costs nothing.
+/// `breaks` are the places of all line feeds.
 fn snippet<'a>(
     span: Span,
     label: &'a str,
     source: &'a Source,
+    breaks: &[usize],
 ) -> Snippet<'a, annotate_snippets::Annotation<'a>> {
     let text = &source.text;
     let start = floor(text, span.start);
     let end = floor(text, span.end.max(span.start)).max(start);
-    let first = text[..start].rfind('\n').map_or(0, |at| at + 1);
-    let last = text[end..].find('\n').map_or(text.len(), |at| end + at);
+    let line = breaks.partition_point(|&at| at < start);
+    let first = line.checked_sub(1).map_or(0, |before| breaks[before] + 1);
+    let last_line = breaks.partition_point(|&at| at < end);
+    let last = breaks.get(last_line).copied().unwrap_or(text.len());
+    let lines = text[first..last].strip_suffix('\r').unwrap_or(&text[first..last]);
     let annotation = AnnotationKind::Primary.span(start - first..end - first);
     let annotation = if label.is_empty() { annotation } else { annotation.label(label) };
-    Snippet::source(&text[first..last])
-        .line_start(source.position(start).line)
-        .path(source.name.as_str())
-        .annotation(annotation)
+    Snippet::source(lines).line_start(line + 1).path(source.name.as_str()).annotation(annotation)
 }
 
 /// The nearest character boundary at or before an offset.

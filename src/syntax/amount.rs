@@ -234,16 +234,22 @@ impl Cursor<'_> {
 
     fn unitless(&self, item: &Item, kind: UnitKind, scale: &Scale) -> Diagnostic {
         let number = self.text(item.value_span);
+        if let Some(message) = self.decimal_comma() {
+            return message;
+        }
         if let Some(token) = self.peek().filter(|token| token.span.start >= item.span.end) {
             let found = self.text(token.span);
-            let symbols = Unit::ALL.iter().filter(|unit| unit.kind() == kind);
-            if let Some(meant) = nearest(found, symbols.map(|unit| unit.symbol())) {
-                return Diagnostic::error(token.span, format!("`{found}` is not a unit"))
-                    .label(format!("did you mean `{meant}`?"));
+            let symbols = || Unit::ALL.iter().filter(|u| u.kind() == kind).map(|u| u.symbol());
+            if let Some(meant) = nearest(found, symbols()) {
+                let message = Diagnostic::error(token.span, format!("`{found}` is not a unit"));
+                return message.label(if found.eq_ignore_ascii_case(meant) {
+                    format!("did you mean `{meant}`?")
+                } else {
+                    format!("write {}", kind.symbols())
+                });
             }
         }
-        let span = Span::new(item.value_span.start, item.value_span.end);
-        Diagnostic::error(span, format!("{} needs a unit", scale.what))
+        Diagnostic::error(item.value_span, format!("{} needs a unit", scale.what))
             .label(format!("write {} after `{number}`", kind.symbols()))
     }
 }

@@ -67,11 +67,6 @@ impl<'a> Cursor<'a> {
         self.tokens.get(self.at).copied()
     }
 
-    /// The token after the next.
-    pub fn peek_second(&self) -> Option<Token> {
-        self.tokens.get(self.at + 1).copied()
-    }
-
     /// Whether the next token is of this kind.
     pub fn sees(&self, kind: TokenKind) -> bool {
         self.peek().is_some_and(|token| token.kind == kind)
@@ -137,21 +132,25 @@ impl<'a> Cursor<'a> {
     }
 
     fn surplus(&self, token: Token) -> Diagnostic {
-        let found = self.text(token.span);
-        let before = self.at.checked_sub(1).map(|before| self.tokens[before]);
-        let comma = token.kind == TokenKind::Comma
-            && before.is_some_and(|token| token.kind == TokenKind::Number)
-            && before.is_some_and(|before| before.span.end == token.span.start)
-            && self.peek_second().is_some_and(|next| {
-                next.kind == TokenKind::Number && next.span.start == token.span.end
-            });
-        if comma {
-            return Diagnostic::error(token.span, "a decimal comma").label("write a point");
+        if let Some(message) = self.decimal_comma() {
+            return message;
         }
+        let found = self.text(token.span);
         self.with_form(
             Diagnostic::error(token.span, format!("`{found}` means nothing here"))
                 .label("not part of this statement"),
         )
+    }
+
+    /// A comma between two numbers with no blank on either side, as in `1,5 nm`.
+    pub fn decimal_comma(&self) -> Option<Diagnostic> {
+        let [before, comma, after] = self.tokens.get(self.at.checked_sub(1)?..)?.first_chunk()?;
+        let kinds = [before.kind, comma.kind, after.kind];
+        let close = before.span.end == comma.span.start && comma.span.end == after.span.start;
+        (close && kinds == [TokenKind::Number, TokenKind::Comma, TokenKind::Number]).then(|| {
+            Diagnostic::error(before.span.to(after.span), "a decimal comma")
+                .label("write a point; a comma separates the items of a list")
+        })
     }
 
     /// Takes a name.
@@ -160,8 +159,13 @@ impl<'a> Cursor<'a> {
             Some(token) if token.kind == TokenKind::Word => {
                 let word = self.text(token.span);
                 if !is_name(word) {
-                    return Err(Diagnostic::error(token.span, format!("`{word}` is not a name"))
-                        .label("a letter from a to z, then such letters, digits and `-`"));
+                    let message = Diagnostic::error(token.span, format!("`{word}` is not a name"));
+                    let hyphenated = word.replace('_', "-");
+                    return Err(message.label(if is_name(&hyphenated) {
+                        format!("write `{hyphenated}`")
+                    } else {
+                        "a letter from a to z, then such letters, digits and `-`".to_owned()
+                    }));
                 }
                 self.at += 1;
                 Ok(Spanned::new(word.to_owned(), token.span))

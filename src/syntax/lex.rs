@@ -61,6 +61,8 @@ pub(super) struct LogicalLine {
     pub tokens: Vec<Token>,
     /// The comment that ends it, `#` included, trailing blanks left out.
     pub comment: Option<Span>,
+    /// Whether a `\` before the comment went without effect.
+    pub cut: bool,
 }
 
 /// What stands at one place of a line.
@@ -73,7 +75,8 @@ enum Lexeme {
 
 /// Reads the logical line that starts at byte `start`, and tells where the next one starts.
 pub(super) fn logical_line(text: &str, start: usize) -> (LogicalLine, usize) {
-    let mut line = LogicalLine { span: Span::new(start, start), tokens: vec![], comment: None };
+    let mut line =
+        LogicalLine { span: Span::new(start, start), tokens: vec![], comment: None, cut: false };
     let mut at = start;
     loop {
         let (end, next) = physical_line(text, at);
@@ -110,6 +113,7 @@ fn physical_tokens(text: &str, start: usize, end: usize, line: &mut LogicalLine)
         let span = Span::new(at, end - after.len());
         if lexeme == Lexeme::Comment {
             line.comment = Some(Span::new(at, at + text[at..end].trim_end().len()));
+            line.cut = backslash.is_some();
             return false;
         }
         let mut push = |kind, span| line.tokens.push(Token { kind, span });

@@ -27,7 +27,7 @@ pub fn parse(source: &Source) -> (Tree, Vec<Diagnostic>) {
         let message = format!("the file has {} bytes", source.text.len());
         reader.messages.push(
             Diagnostic::new(Severity::Error, None, message)
-                .help(format!("a flow file may have {MAX_BYTES} bytes (1 MiB)")),
+                .help(format!("the limit is {MAX_BYTES} bytes (1 MiB)")),
         );
         return (reader.tree, reader.messages);
     }
@@ -60,7 +60,7 @@ impl Reader {
                     let span = line.tokens[0].span;
                     self.messages.push(
                         Diagnostic::error(span, "too many statements")
-                            .label(format!("a flow file may have {MAX_STATEMENTS}")),
+                            .label(format!("a flow file may have {MAX_STATEMENTS} statements")),
                     );
                 }
             }
@@ -98,7 +98,10 @@ impl Reader {
     }
 
     fn broken(&mut self, text: &str, line: LogicalLine, message: Option<Diagnostic>) -> Line {
-        self.messages.extend(message);
+        self.messages.extend(message.map(|message| match line.cut {
+            true => message.help("a comment ends the statement, even after `\\`"),
+            false => message,
+        }));
         let words = line.tokens.iter().map(|token| text[token.span.start..token.span.end].into());
         let content = Content::Broken(Broken { section: self.section, words: words.collect() });
         finish(line, content, vec![])
@@ -303,6 +306,7 @@ fn lexical(text: &str, tokens: &[Token]) -> Option<Diagnostic> {
     let stray = &text[bad.span.start..bad.span.end];
     let label = match stray {
         "−" | "–" | "—" => "write `-` for a minus",
+        "=" if text[bad.span.end..].starts_with('>') => "write `>=` for at least",
         "<" | "≤" | "=" => "write `<=` for at most",
         ">" | "≥" => "write `>=` for at least",
         "“" | "”" | "„" | "'" | "‘" | "’" | "`" => "write `\"` around a string",

@@ -136,8 +136,8 @@ impl Cursor<'_> {
         }
         let length = self.amount::<Length>(&Scale::HEIGHT)?.value;
         let below = self.eat_word("below");
-        if !below {
-            self.need_word("above")?;
+        if !below && !self.eat_word("above") {
+            return Err(self.missing("`above` or `below`"));
         }
         let nominal = if below { -length.nominal } else { length.nominal };
         let place = self.place("a place")?;
@@ -152,6 +152,11 @@ impl Cursor<'_> {
         Ok(match name.value.as_str() {
             "lines" => Place::Lines,
             "floor" => Place::Floor,
+            // `above the lines` reads well, and is no place.
+            _ if matches!(self.word(), Some("lines" | "floor")) => {
+                return Err(Diagnostic::error(name.span, format!("`{}` is no place", name.value))
+                    .label("leave it out"));
+            }
             _ => Place::Layer(name),
         })
     }

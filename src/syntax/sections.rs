@@ -8,7 +8,7 @@ use super::tree::{
     Bound, Change, Gap, LimitStatement, NetStatement, SplitStatement, Statement, WaiverStatement,
 };
 use super::wafer::wafer_statement;
-use super::words::STATES;
+use super::words::{STATES, STEP_VERBS};
 use crate::diag::Diagnostic;
 
 /// Reads `use STRING`.
@@ -50,6 +50,8 @@ pub(super) fn split_statement(cursor: &mut Cursor) -> Parsed<SplitStatement> {
         } else {
             Change::Step(op, split_step(cursor)?)
         }
+    } else if cursor.word().is_some_and(|word| word == "skip" || STEP_VERBS.contains(&word)) {
+        return Err(cursor.missing("an operation number"));
     } else if cursor.word().is_some() {
         Change::Wafer(wafer_statement(cursor)?)
     } else {

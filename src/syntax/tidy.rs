@@ -135,6 +135,7 @@ impl Layout<'_> {
                     self.comment(line);
                 }
                 Content::Section(section) => {
+                    anything = false;
                     self.out.push_str(section.word());
                     if line.comment.is_some() {
                         self.out.push_str("  ");

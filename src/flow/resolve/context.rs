@@ -3,6 +3,7 @@
 use std::collections::{BTreeMap, BTreeSet};
 use std::sync::Arc;
 
+use super::draft::Split;
 use crate::diag::{Diagnostic, nearest};
 use crate::flow::{Quantity, State};
 use crate::library::{Library, Material, MaterialId, Process, Verb};
@@ -15,7 +16,7 @@ pub(super) struct Context<'a> {
     pub library: &'a Library,
     messages: Vec<Diagnostic>,
     said: BTreeSet<(Option<Span>, String)>,
-    split: Option<String>,
+    split: Option<(String, Vec<Span>)>,
     processes: BTreeMap<String, Arc<Process>>,
 }
 
@@ -32,16 +33,25 @@ impl<'a> Context<'a> {
     }
 
     /// From here on the statements are those of this split.
-    pub fn enter(&mut self, split: Option<String>) {
-        self.split = split;
+    pub fn enter(&mut self, split: Option<&Split>) {
+        self.split = split.map(|split| {
+            let own = split.changes.iter().map(|statement| statement.span);
+            (split.name.value.clone(), own.collect())
+        });
     }
 
-    /// Adds a message, once however many variants say it. What only a split says names it.
+    /// Adds a message, once however many variants say it. What only a split says of a
+    /// statement that is not its own names the split.
     pub fn say(&mut self, mut message: Diagnostic) {
         if !self.said.insert((message.span, message.message.clone())) {
             return;
         }
-        if let Some(split) = &self.split {
+        let inside = |own: &Span| {
+            message.span.is_some_and(|span| own.start <= span.start && span.end <= own.end)
+        };
+        if let Some((split, own)) = &self.split
+            && !own.iter().any(inside)
+        {
             message.message = format!("{}, in the split `{split}`", message.message);
         }
         self.messages.push(message);

@@ -39,8 +39,7 @@ impl Places {
             if let Some(wafer) = wafer
                 && known.len() > MAX_SITES
             {
-                let split = variant.checked_sub(1).map(|at| draft.splits[at].name.value.clone());
-                context.enter(split);
+                context.enter(variant.checked_sub(1).map(|at| &draft.splits[at]));
                 let message = format!("the wafer has {} spaces", known.len());
                 context.say(
                     Diagnostic::error(wafer.lines.span, message)

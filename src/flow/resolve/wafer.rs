@@ -16,7 +16,7 @@ impl<'t> Draft<'t> {
     pub fn wafers(&self, context: &mut Context) -> Vec<Option<Wafer>> {
         let mut wafers = vec![self.wafer_of(&self.wafer, None, context)];
         for split in &self.splits {
-            context.enter(Some(split.name.value.clone()));
+            context.enter(Some(split));
             wafers.push(if split.wafer().next().is_none() {
                 wafers[0].clone()
             } else {
@@ -85,7 +85,7 @@ impl<'t> Draft<'t> {
         stack: Option<&syntax::Film>,
         context: &mut Context,
     ) -> Option<Wafer> {
-        let mut build = Build::default();
+        let mut build = Build { unread: self.unread.wafer, ..Build::default() };
         for (statement, span) in statements {
             build.add(statement, *span, context);
         }
@@ -93,7 +93,7 @@ impl<'t> Draft<'t> {
             build.stack(stack, context);
         }
         let span = statements.iter().map(|(_, span)| *span).reduce(Span::to);
-        build.finish(span, self.unread.wafer, context)
+        build.finish(span, context)
     }
 }
 
@@ -110,6 +110,8 @@ struct Build<'t> {
     over: Vec<Film>,
     /// Something was wrong and has been told.
     wrong: bool,
+    /// A line about the wafer could not be read, so nothing can be missed.
+    unread: bool,
 }
 
 impl<'t> Build<'t> {
@@ -200,7 +202,7 @@ impl<'t> Build<'t> {
                 "a `layer` under lines that have their material",
                 "write `lines` without thickness and material to stack layers",
             )),
-            WaferStatement::Layer { .. } if !after_lines && !self.wrong => {
+            WaferStatement::Layer { .. } if !after_lines && !self.wrong && !self.unread => {
                 Some(("a `layer` before `lines`", "layers stand under `lines`"))
             }
             _ => None,
@@ -333,10 +335,10 @@ impl<'t> Build<'t> {
     }
 
     /// Puts the wafer together once all of it is known.
-    fn finish(mut self, span: Option<Span>, unread: bool, context: &mut Context) -> Option<Wafer> {
+    fn finish(mut self, span: Option<Span>, context: &mut Context) -> Option<Wafer> {
         let span = span?;
         let Some((lines, written)) = self.lines.take() else {
-            if !self.wrong && !unread {
+            if !self.wrong && !self.unread {
                 context.say(
                     Diagnostic::error(span, "the wafer has no `lines`")
                         .label("write `lines LENGTH MATERIAL width LENGTH space LENGTH`"),
@@ -345,7 +347,7 @@ impl<'t> Build<'t> {
             return None;
         };
         if self.layers.is_empty() {
-            if !self.wrong && !unread {
+            if !self.wrong && !self.unread {
                 context.say(
                     Diagnostic::error(lines.span, "lines without a material")
                         .label("write `lines LENGTH MATERIAL …`, or `layer` statements under it"),
@@ -365,7 +367,7 @@ impl<'t> Build<'t> {
                 }
             },
         };
-        (!self.wrong && !unread).then_some(Wafer {
+        (!self.wrong && !self.unread).then_some(Wafer {
             below: self.below,
             lines,
             rows: self.rows,

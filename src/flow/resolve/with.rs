@@ -25,7 +25,8 @@ pub(super) fn apply(
         }
         let (nominal, three_sigma) = in_unit(&entry.amount, &target, &entry.name.value, context)?;
         if !target.bounds().allow(nominal) {
-            let message = format!("`{}` cannot be this", entry.name.value);
+            let written = context.text(entry.amount.span);
+            let message = format!("`{}` of {written} is out of range", entry.name.value);
             let unit = target.unit().symbol();
             let words = format!("{} {unit}", target.bounds().words());
             context.say(
@@ -153,13 +154,15 @@ fn in_unit(
     if !sound {
         let wanted = match kind {
             Some(UnitKind::Share) => "a plain number, or a percentage".to_owned(),
-            Some(kind) => format!("{}, in {}", kind.words(), kind.symbols()),
-            None => format!("a plain number, in {}", target.unit().symbol()),
+            Some(kind) => format!("{} with its unit", kind.words()),
+            None => format!("a plain number, meant in {}", target.unit().symbol()),
         };
-        context.say(
-            Diagnostic::error(amount.span, format!("`{name}` takes {wanted}"))
-                .label("another kind of amount"),
-        );
+        context.say(Diagnostic::error(amount.span, format!("`{name}` takes {wanted}")).label(
+            match kind {
+                Some(UnitKind::Share) | None => "leave the unit out".to_owned(),
+                Some(kind) => format!("write {}", kind.symbols()),
+            },
+        ));
         return None;
     }
     let to_key = |base: f64| match kind {
