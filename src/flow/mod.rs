@@ -3,7 +3,11 @@
 mod model;
 mod quantity;
 mod resolve;
+mod step;
+mod wafer;
 
 pub use model::*;
 pub use quantity::{Dimension, Quantity};
 pub use resolve::{resolve, uses};
+pub use step::*;
+pub use wafer::*;
