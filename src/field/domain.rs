@@ -70,8 +70,8 @@ pub(super) struct Domain {
     pub parts: usize,
     /// Conductors: electrodes first, floating ones, far edges last.
     pub conductors: usize,
-    /// Re-entrant conductor corners, where the field has no limit, and at each the shortest
-    /// outline edge, in nm.
+    /// Re-entrant conductor corners, where the field has no limit, and at each the shorter of
+    /// the conductor's edges, in nm.
     pub corners: Vec<(u32, f64)>,
 }
 
@@ -312,11 +312,13 @@ fn reentrant_corners(all: &Triangulation, conductor: &[Option<usize>]) -> Vec<(u
                 let (a, b) = (corners[(k + 1) % 3] - corners[k], corners[(k + 2) % 3] - corners[k]);
                 angle[v] += a.cross(b).atan2(a.dot(b));
             }
-            if all.outline[t][k] {
+            let other = all.neighbours[t][k];
+            if other == NONE {
+                edge(all, t, k).iter().for_each(|end| mirrored[*end as usize] = true);
+            } else if conductor[t].is_some() && conductor[other as usize].is_none() {
                 for end in edge(all, t, k) {
                     let length = corners[(k + 1) % 3].distance(corners[(k + 2) % 3]);
                     shortest[end as usize] = shortest[end as usize].min(length);
-                    mirrored[end as usize] |= all.neighbours[t][k] == NONE;
                 }
             }
         }
