@@ -4,14 +4,19 @@
 //! One trace gives plain numbers ([`gap`]); two of them, coarse and fine, give figures
 //! ([`error`], [`geometry`]); the figures of a site are put together in [`site`].
 
+mod closing_space;
+mod electrical;
 mod error;
 mod film;
 mod gap;
 mod geometry;
 #[cfg(test)]
 pub(crate) mod hand;
+mod measured;
 mod model;
+mod nets;
 mod pages;
+mod peak_temperature;
 mod polish;
 mod question;
 mod reading;
@@ -21,7 +26,10 @@ mod via;
 mod view;
 mod void;
 
+pub use closing_space::{Fineness, Grow};
+pub use electrical::{Electrical, Reference};
 pub use geometry::{Geometry, Traced, for_all, site_states};
+pub use measured::{Measured, Traces, Wanted};
 pub use model::*;
 pub use pages::page;
 pub use question::{Figures, Question};
@@ -37,4 +45,10 @@ pub enum MeasureError {
     /// A figure came out as no number.
     #[error("{0} is not a finite number")]
     NotFinite(&'static str),
+    /// The field solver found itself wrong.
+    #[error("field: {0}")]
+    Field(#[from] crate::field::FieldError),
+    /// A trial growth found itself wrong.
+    #[error("{0}")]
+    Sim(#[from] crate::sim::SimError),
 }

@@ -7,8 +7,8 @@
 use crate::geom::{Intervals, Point, Region};
 use crate::sim::{Drawn, DrawnLine, Origin, Section};
 
-/// Sky kept above the highest solid, so that the ambient is a region, in nm.
-const SKY_NM: f64 = 1.0;
+/// How far the clip of a view reaches beyond what it clips, in nm.
+const BEYOND_NM: f64 = 1.0;
 
 /// Where a space lies in its section.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -52,7 +52,7 @@ impl Window {
         if bounds.max.x <= self.range[0] || bounds.min.x >= self.range[1] {
             return Region::empty();
         }
-        let z = [bounds.min.z - SKY_NM, bounds.max.z + SKY_NM];
+        let z = [bounds.min.z - BEYOND_NM, bounds.max.z + BEYOND_NM];
         let part = region
             .intersection(&Region::rectangle(self.range, z))
             .translated(Point::new(-self.middle, 0.0));
@@ -121,7 +121,7 @@ impl View {
             solid: window.view(&solid),
             lines: window.view(&lines),
             voids: parts,
-            ambient: window.view(&ambient(section)),
+            ambient: window.view(&section.ambient()),
         }
     }
 
@@ -164,16 +164,4 @@ fn sides(drawn: &Drawn, index: usize, window: &Window, of: fn(&DrawnLine) -> [f6
         (None, Some(right)) => [-right, right],
         (None, None) => [0.0, 0.0],
     }
-}
-
-/// What the ambient of a section reaches, up to a little above its highest solid.
-pub(super) fn ambient(section: &Section) -> Region {
-    let solid = Region::union_all(section.bodies.iter().map(|body| &body.region));
-    let Some(bounds) = solid.bounds() else { return Region::empty() };
-    let sky = bounds.max.z + SKY_NM;
-    let rest = Region::rectangle(section.drawn.walls, [bounds.min.z, sky])
-        .difference(&solid)
-        .difference(&Region::union_all(section.voids.iter()));
-    let reaches_sky = |part: &Region| part.bounds().is_some_and(|b| b.max.z >= sky - SKY_NM / 2.0);
-    Region::union_all(rest.parts().filter(reaches_sky).collect::<Vec<_>>().iter())
 }

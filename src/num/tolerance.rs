@@ -88,3 +88,10 @@ pub const FIELD_TRIANGLES: usize = 200_000;
 
 /// Relative slack of an inequality that holds exactly but for rounding.
 pub const FIELD_ROUNDING: f64 = 1e-9;
+
+/// How much looser than the fine section the coarse one is solved for its capacitance.
+pub const COARSE_FIELD: f64 = 4.0;
+
+/// Step of the search for the widest space that a seal closes, over that space, at which the
+/// search ends.
+pub const CLOSING_SPACE: f64 = 0.002;
