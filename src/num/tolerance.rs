@@ -47,6 +47,9 @@ pub const SAME_LINE_NM: f64 = 4e-6;
 /// in nm.
 pub const FACET_SLACK_NM: f64 = 2e-4;
 
+/// The same as a share of the chord, where the flux is known no better.
+pub const FACET_SLACK_SHARE: f64 = 0.01;
+
 /// A removal is done when no surface has further than this to go, in nm.
 pub const LAG_LEFT_NM: f64 = 1e-4;
 

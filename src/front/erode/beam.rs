@@ -5,7 +5,6 @@
 //! dark. Cost: the square of the number of facets.
 
 use super::surface::{Facet, Frame, Link};
-use super::sweep::Flux;
 use crate::front::Character;
 use crate::geom::Point;
 use crate::num::tolerance::SIDE_STEP_NM;
@@ -23,18 +22,17 @@ fn directions(character: &Character) -> Vec<Point> {
     }
 }
 
-/// Conformal part and beams on each facet.
-pub(super) fn flux(facets: &[Facet], character: &Character, frame: &Frame) -> Vec<Flux> {
+/// Vector flux of the beams on each facet, zero where it lies in shadow or along them.
+pub(super) fn arrival(facets: &[Facet], character: &Character, frame: &Frame) -> Vec<Point> {
     let directions = directions(character);
     let share = character.directional / directions.len().max(1) as f64;
     facets
         .iter()
         .map(|facet| {
-            let beam = directions
+            directions
                 .iter()
                 .filter(|d| facet.normal().dot(**d) > GRAZING && is_lit(facet, **d, facets, frame))
-                .fold(Point::default(), |sum, &d| sum + d * (-share / d.z));
-            Flux { conformal: character.conformal, beam, diffuse: 0.0 }
+                .fold(Point::default(), |sum, &d| sum + d * (-share / d.z))
         })
         .collect()
 }

@@ -14,6 +14,7 @@
 //! where the flux does.
 
 mod beam;
+mod flux;
 mod locate;
 mod surface;
 mod sweep;
@@ -21,10 +22,12 @@ mod sweep;
 mod tests;
 
 use surface::{Facet, Frame};
+use sweep::Rounding;
 
 use super::{Character, Erosion, FrontError, Resolution, Scene};
 use crate::geom::{Point, Region};
 use crate::num::tolerance::{LAG_LEFT_NM, SIDE_STEP_NM};
+use flux::Source;
 use locate::Locator;
 
 /// Removes what `depth_nm` takes, measured on an open flat of a solid with rate 1.
@@ -116,6 +119,7 @@ impl Groups {
 /// A removal under way.
 struct Etch<'a> {
     character: &'a Character,
+    source: Source,
     resolution: &'a Resolution,
     frame: Frame,
     groups: Groups,
@@ -140,6 +144,7 @@ impl<'a> Etch<'a> {
         let (ambient, voids) = frame.split_open(&open)?;
         let mut etch = Self {
             character,
+            source: Source::new(*character, &frame),
             resolution,
             frame,
             groups: Groups::by_rate(scene.solids.iter().map(|s| s.rate)),
@@ -200,22 +205,21 @@ impl<'a> Etch<'a> {
 
     /// Longest step, in nm of depth.
     fn step_nm(&self) -> f64 {
-        if self.is_conformal() && self.groups.rates.len() == 1 {
+        if self.source.is_conformal() && self.groups.rates.len() == 1 {
             return f64::INFINITY;
         }
+        // With a flux that varies from place to place, a facet moves less than its length.
+        let facets = if self.source.is_diffuse() { 0.5 } else { 1.0 };
         let fastest = self.groups.rates.iter().copied().fold(0.0, f64::max);
-        self.resolution.facet_nm / fastest.max(f64::MIN_POSITIVE)
-    }
-
-    fn is_conformal(&self) -> bool {
-        self.character.directional == 0.0 && self.character.neutral == 0.0
+        facets * self.resolution.facet_nm / fastest.max(f64::MIN_POSITIVE)
     }
 
     /// One step: flux, sweep, cut, and the new surface with its lags.
     fn step(&mut self, by: f64) -> Result<(), FrontError> {
-        let flux = beam::flux(&self.facets, self.character, &self.frame);
+        let flux = self.source.on(&self.facets, &self.frame)?;
         let budget: Vec<_> = self.facets.iter().map(|f| f.lag.map(|lag| by + lag)).collect();
-        let swept: Vec<_> = sweep::sweeps(&self.facets, &flux, &budget, &self.groups)
+        let rounding = if self.source.is_diffuse() { Rounding::ROUGH } else { Rounding::FINE };
+        let swept: Vec<_> = sweep::sweeps(&self.facets, &flux, &budget, &self.groups, rounding)
             .into_iter()
             .map(Region::from_rings)
             .collect();
@@ -267,8 +271,13 @@ impl<'a> Etch<'a> {
     }
 
     fn exposed(&self) -> Vec<Facet> {
-        let mut facets =
-            surface::facets(&self.ambient, &self.frame, &self.solids, self.resolution.facet_nm);
+        let mut facets = surface::facets(
+            &self.ambient,
+            &self.frame,
+            &self.solids,
+            self.resolution.facet_nm,
+            self.source.is_diffuse(),
+        );
         beam::break_at_shadows(&mut facets, self.character, &self.frame);
         facets
     }
@@ -339,7 +348,15 @@ impl Past<'_> {
             **speed > 0.0 && (group.is_none() || own == group)
         })
         .map(|((from, speed), budget)| {
-            budget[0].max(budget[1]) - p.distance_to_segment(from.a, from.b) / speed
+            let along = from.b - from.a;
+            let nearest = ((p - from.a).dot(along) / along.dot(along)).clamp(0.0, 1.0);
+            [0.0, nearest, 1.0]
+                .map(|t| {
+                    let start = from.a + along * t;
+                    budget[0] + (budget[1] - budget[0]) * t - p.distance(start) / speed
+                })
+                .into_iter()
+                .fold(0.0, f64::max)
         })
         .fold(0.0, f64::max)
     }

@@ -3,7 +3,7 @@
 use super::locate::Locator;
 use crate::front::FrontError;
 use crate::geom::{Bounds, Point, Region};
-use crate::num::tolerance::{FACET_SLACK_NM, SAME_LINE_NM, SIDE_STEP_NM};
+use crate::num::tolerance::{FACET_SLACK_NM, FACET_SLACK_SHARE, SAME_LINE_NM, SIDE_STEP_NM};
 
 /// What follows a facet at one of its ends.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -127,11 +127,13 @@ fn shaved(ring: &[Point]) -> Vec<Point> {
         {
             kept.pop();
         }
-        kept.push(p);
+        if kept.last() != Some(&p) {
+            kept.push(p);
+        }
     }
     while kept.len() > 2 {
         let n = kept.len();
-        if is_tip(kept[n - 2], kept[n - 1], kept[0]) {
+        if kept[0] == kept[n - 1] || is_tip(kept[n - 2], kept[n - 1], kept[0]) {
             kept.pop();
         } else if is_tip(kept[n - 1], kept[0], kept[1]) {
             kept.remove(0);
@@ -149,13 +151,14 @@ pub(super) fn facets(
     frame: &Frame,
     solids: &[Region],
     facet_nm: f64,
+    is_rough: bool,
 ) -> Vec<Facet> {
     let nodes = Nodes::new(solids);
     let owners = Locator::new(solids);
     let mut facets = Vec::new();
     for ring in ambient.rings() {
         for chain in chains(&shaved(ring), frame) {
-            add_chain(&mut facets, &chain, frame, &nodes, &owners, facet_nm);
+            add_chain(&mut facets, &chain, frame, &nodes, &owners, facet_nm, is_rough);
         }
     }
     facets
@@ -230,6 +233,7 @@ fn add_chain(
     nodes: &Nodes,
     owners: &Locator,
     facet_nm: f64,
+    is_rough: bool,
 ) {
     let mut points = Vec::new();
     let n = chain.points.len();
@@ -248,7 +252,7 @@ fn add_chain(
     let mut i = 0;
     while i < owner.len() {
         let run = owner[i..].iter().take_while(|&&o| o == owner[i]).count();
-        for edge in coarsened(&points[i..=i + run], facet_nm).windows(2) {
+        for edge in coarsened(&points[i..=i + run], facet_nm, is_rough).windows(2) {
             let pieces = (edge[0].distance(edge[1]) / facet_nm).ceil().max(1.0) as usize;
             let cut = |k: usize| {
                 if k == pieces {
@@ -291,17 +295,25 @@ fn owner_behind(a: Point, b: Point, owners: &Locator) -> Option<usize> {
     [1.0, 10.0, 100.0].iter().find_map(|far| owners.find(middle + inward * (SIDE_STEP_NM * far)))
 }
 
+/// How far left-out vertices may lie from a chord of this length, in nm.
+pub(super) fn slack_nm(chord: f64) -> f64 {
+    FACET_SLACK_NM.max(FACET_SLACK_SHARE * chord)
+}
+
 /// The chain with vertices left out that stay near the chord of their neighbours, no chord
 /// longer than `facet_nm`.
-fn coarsened(points: &[Point], facet_nm: f64) -> Vec<Point> {
+fn coarsened(points: &[Point], facet_nm: f64, is_rough: bool) -> Vec<Point> {
     let mut kept = vec![points[0]];
     let mut i = 0;
     while i + 1 < points.len() {
         let fits = |j: usize| {
-            points[i].distance(points[j]) <= facet_nm
+            let chord = points[i].distance(points[j]);
+            let slack = if is_rough { slack_nm(chord) } else { FACET_SLACK_NM };
+            chord <= facet_nm
+                && chord > SAME_LINE_NM
                 && points[i + 1..j]
                     .iter()
-                    .all(|p| p.distance_to_segment(points[i], points[j]) <= FACET_SLACK_NM)
+                    .all(|p| p.distance_to_segment(points[i], points[j]) <= slack)
         };
         let mut j = i + 1;
         while j + 1 < points.len() && fits(j + 1) {
@@ -326,7 +338,7 @@ mod tests {
         let open = frame.region().difference(&Region::union_all(&solids));
         let (ambient, voids) = frame.split_open(&open).unwrap();
         assert!(voids.is_empty());
-        let facets = facets(&ambient, &frame, &solids, 2.0);
+        let facets = facets(&ambient, &frame, &solids, 2.0, false);
         let length = |owner| {
             facets.iter().filter(|f| f.owner == Some(owner)).map(Facet::length).sum::<f64>()
         };

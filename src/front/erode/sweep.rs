@@ -10,9 +10,9 @@
 //! where the two images meet.
 
 use super::Groups;
-use super::surface::{Facet, Link};
+use super::surface::{Facet, Link, slack_nm};
 use crate::geom::Point;
-use crate::num::tolerance::{ARC_SAGITTA_NM, FACET_SLACK_NM};
+use crate::num::tolerance::ARC_SAGITTA_NM;
 
 /// What arrives at a facet, relative to the open flat.
 #[derive(Debug, Clone, Copy)]
@@ -23,6 +23,8 @@ pub(super) struct Flux {
     pub(super) beam: Point,
     /// From all directions in view, through the facet.
     pub(super) diffuse: f64,
+    /// The same on an open flat.
+    pub(super) diffuse_most: f64,
 }
 
 impl Flux {
@@ -37,12 +39,26 @@ impl Flux {
     }
 }
 
-/// Below this angle two facets are one smooth surface, in radians.
-const SMOOTH_RAD: f64 = 0.1;
-/// Largest angle between the facets of a rounded corner: they must stay one smooth surface.
-const ARC_STEP_RAD: f64 = 0.08;
-/// Angle below which the meeting point of two images loses its meaning, in radians.
-const FLAT_RAD: f64 = 0.01;
+/// How finely corners are rounded.
+#[derive(Clone, Copy)]
+pub(super) struct Rounding {
+    /// Below this angle two facets are one smooth surface, in radians.
+    smooth_rad: f64,
+    /// Largest angle between the facets of a rounded corner, which must stay smooth, in radians.
+    arc_rad: f64,
+}
+
+impl Rounding {
+    /// Where the flux is exact.
+    pub(super) const FINE: Self = Self { smooth_rad: 0.1, arc_rad: 0.08 };
+    /// Where the flux is that of a facet's middle: finer facets than it can tell apart only add
+    /// noise.
+    pub(super) const ROUGH: Self = Self { smooth_rad: 0.35, arc_rad: 0.3 };
+}
+
+/// Smaller angles than this do not tell two speeds by direction from two speeds by place, in
+/// radians.
+const FLAT_RAD: f64 = 0.1;
 /// Beams that differ by more than this are light and shadow.
 const SHADOW: f64 = 0.1;
 
@@ -50,6 +66,7 @@ const SHADOW: f64 = 0.1;
 #[derive(Clone, Copy)]
 struct Side {
     normal: Point,
+    length: f64,
     flux: Flux,
     /// Removal by a flux of one, in nm.
     reach: f64,
@@ -61,6 +78,10 @@ impl Side {
         let flip = |v: Point| Point::new(-v.x, v.z);
         let flux = Flux { beam: flip(self.flux.beam), ..self.flux };
         Self { normal: flip(self.normal), flux, ..self }
+    }
+
+    fn along(&self) -> Point {
+        Point::new(self.normal.z, -self.normal.x)
     }
 
     /// Along the inward normal, without what the beam does.
@@ -75,10 +96,10 @@ impl Side {
 
     /// The body that the vertex reaches in this solid, given the vector of all that is not
     /// conformal.
-    fn body(&self, vector: Point) -> Option<(usize, Vec<Point>)> {
+    fn body(&self, vector: Point, rounding: Rounding) -> Option<(usize, Vec<Point>)> {
         let radius = self.flux.conformal * self.reach;
         let group = self.group.filter(|_| radius > 0.0)?;
-        Some((group, capsule(vector * self.reach, radius)))
+        Some((group, capsule(vector * self.reach, radius, rounding)))
     }
 }
 
@@ -91,60 +112,72 @@ struct Corner {
 }
 
 impl Corner {
-    fn between(first: Side, second: Side) -> Self {
+    fn between(first: Side, second: Side, rounding: Rounding) -> Self {
+        let Rounding { smooth_rad, .. } = rounding;
         let angle = first.normal.cross(second.normal).atan2(first.normal.dot(second.normal));
         let own_moves = [first.own_move(), second.own_move()];
         if first.group != second.group {
             let bodies = [first, second].into_iter().filter_map(|side| {
-                let vector = if angle > SMOOTH_RAD {
+                let vector = if angle > smooth_rad {
                     vector_flux(&first, &second)
                 } else {
                     side.flux.beam - side.normal * side.flux.diffuse
                 };
-                side.body(vector)
+                side.body(vector, rounding)
             });
             return Self { moves: own_moves, bodies: bodies.collect() };
         }
-        if angle > SMOOTH_RAD {
-            return Self::opened(&first, &second, angle);
+        if angle > smooth_rad {
+            return Self::opened(&first, &second, angle, rounding);
         }
-        if angle < -SMOOTH_RAD || (angle < 0.0 && first.advance() == second.advance()) {
+        if angle < 0.0 && first.advance() == second.advance() {
             return Self { moves: own_moves, bodies: Vec::new() };
         }
         if (first.flux.beam - second.flux.beam).norm() > SHADOW {
             let lit = if first.flux.beam.norm() > second.flux.beam.norm() { first } else { second };
-            let body = lit.body(lit.flux.beam - lit.normal * lit.flux.diffuse);
+            let body = lit.body(lit.flux.beam - lit.normal * lit.flux.diffuse, rounding);
             return Self { moves: own_moves, bodies: body.into_iter().collect() };
         }
         let beam = first.flux.beam * (first.reach / 2.0) + second.flux.beam * (second.reach / 2.0);
-        let meeting = meeting(&first, &second, [first.advance(), second.advance()], FLAT_RAD);
-        Self { moves: [beam + meeting; 2], bodies: Vec::new() }
+        let meeting = meeting(&first, &second, [first.advance(), second.advance()]);
+        let overtakes = |side: &Side| side.along().dot(meeting).abs() > side.length / 2.0;
+        let moves = if angle < -smooth_rad && (overtakes(&first) || overtakes(&second)) {
+            own_moves
+        } else {
+            [beam + meeting; 2]
+        };
+        Self { moves, bodies: Vec::new() }
     }
 
     /// Where the ambient is convex: the images part, and the body of the corner lies between.
-    fn opened(first: &Side, second: &Side, angle: f64) -> Self {
+    fn opened(first: &Side, second: &Side, angle: f64, rounding: Rounding) -> Self {
         let reach = (first.reach + second.reach) / 2.0;
         let radius = first.flux.conformal * reach;
         let centre = vector_flux(first, second) * reach;
         let moves = [first, second].map(|side| centre - side.normal * radius);
         let mut body = vec![Point::default(), moves[0]];
-        body.extend(arc(centre, radius, first.normal * -1.0, angle));
+        body.extend(arc(centre, radius, first.normal * -1.0, angle, rounding));
         body.push(moves[1]);
         let group = first.group.filter(|_| reach > 0.0);
         Self { moves, bodies: group.map(|g| (g, body)).into_iter().collect() }
     }
 }
 
-/// The vector flux in a corner of the ambient, from the fluxes through its two facets.
+/// The vector flux in a corner of the ambient, from the fluxes through its two facets. In a
+/// narrow corner these, taken at the middles of the facets, leave it badly known: it is never
+/// more than an open flat gets.
 fn vector_flux(first: &Side, second: &Side) -> Point {
     let beam = [first, second].map(|s| s.flux.beam);
     let beam = if beam[0].norm() >= beam[1].norm() { beam[0] } else { beam[1] };
-    beam + meeting(first, second, [first.flux.diffuse, second.flux.diffuse], 0.0)
+    let spread = meeting(first, second, [first.flux.diffuse, second.flux.diffuse]);
+    let most = first.flux.diffuse_most;
+    let size = spread.norm();
+    beam + if size > most { spread * (most / size) } else { spread }
 }
 
-/// The vector that advances `advance` along the inward normal of each facet; its part along
-/// the surface fades out below the angle `flat_rad`.
-fn meeting(first: &Side, second: &Side, advance: [f64; 2], flat_rad: f64) -> Point {
+/// The vector that advances `advance` along the inward normal of each facet. On a smooth surface,
+/// where two speeds differ by place and not by direction, it has no part along the surface.
+fn meeting(first: &Side, second: &Side, advance: [f64; 2]) -> Point {
     let sum = first.normal + second.normal;
     let length = sum.norm();
     if length < f64::EPSILON {
@@ -154,16 +187,25 @@ fn meeting(first: &Side, second: &Side, advance: [f64; 2], flat_rad: f64) -> Poi
     let along = Point::new(middle.z, -middle.x);
     let (cos, sin) = (length / 2.0, first.normal.dot(along));
     let inward = (advance[0] + advance[1]) / (2.0 * cos);
-    let scale = sin * sin + flat_rad * flat_rad;
-    let aside = if scale > 0.0 { (advance[1] - advance[0]) * sin / (2.0 * scale) } else { 0.0 };
-    let limit = advance[0].max(advance[1]);
-    middle * -inward + along * aside.clamp(-limit, limit)
+    let aside = if sin.abs() > (FLAT_RAD / 2.0).sin() {
+        let limit = advance[0].max(advance[1]);
+        ((advance[1] - advance[0]) / (2.0 * sin)).clamp(-limit, limit)
+    } else {
+        0.0
+    };
+    middle * -inward + along * aside
 }
 
 /// Vertices of the polygon about an arc, its edges touching the circle: from the direction
 /// `from` about `centre` through `angle`, both ends left out.
-fn arc(centre: Point, radius: f64, from: Point, angle: f64) -> impl Iterator<Item = Point> {
-    let widest = ARC_STEP_RAD.min((8.0 * ARC_SAGITTA_NM / radius.max(ARC_SAGITTA_NM)).sqrt());
+fn arc(
+    centre: Point,
+    radius: f64,
+    from: Point,
+    angle: f64,
+    rounding: Rounding,
+) -> impl Iterator<Item = Point> {
+    let widest = rounding.arc_rad.min((8.0 * ARC_SAGITTA_NM / radius.max(ARC_SAGITTA_NM)).sqrt());
     let steps = (angle / widest).ceil().max(1.0);
     let step = angle / steps;
     let radius = radius / (step / 2.0).cos();
@@ -175,13 +217,13 @@ fn arc(centre: Point, radius: f64, from: Point, angle: f64) -> impl Iterator<Ite
 }
 
 /// All that lies within `radius` of the segment from the origin to `end`.
-fn capsule(end: Point, radius: f64) -> Vec<Point> {
+fn capsule(end: Point, radius: f64, rounding: Rounding) -> Vec<Point> {
     let length = end.norm();
     let along = if length > 0.0 { end * (1.0 / length) } else { Point::new(1.0, 0.0) };
     let right = Point::new(along.z, -along.x);
     let half = std::f64::consts::PI;
-    let about_end = arc(end, radius, right, half);
-    about_end.chain(arc(Point::default(), radius, right * -1.0, half)).collect()
+    let about_end = arc(end, radius, right, half, rounding);
+    about_end.chain(arc(Point::default(), radius, right * -1.0, half, rounding)).collect()
 }
 
 /// Polygons swept in the solids of each group, to be cut with these.
@@ -193,9 +235,11 @@ pub(super) fn sweeps(
     flux: &[Flux],
     budget: &[[f64; 2]],
     groups: &Groups,
+    rounding: Rounding,
 ) -> Vec<Vec<Vec<Point>>> {
     let side = |i: usize, end: usize| Side {
         normal: facets[i].normal(),
+        length: facets[i].length(),
         flux: flux[i],
         reach: groups.rate_of(facets[i].owner) * budget[i][end],
         group: facets[i].owner.map(|o| groups.of[o]),
@@ -215,14 +259,14 @@ pub(super) fn sweeps(
             Link::End => None,
         };
         let start_move = first.map_or(start.own_move(), |first| {
-            let corner = Corner::between(first, start);
+            let corner = Corner::between(first, start, rounding);
             add_bodies(facet.a, corner.bodies);
             corner.moves[1]
         });
         let end_move = match facet.after {
-            Link::Facet(j) => Corner::between(end, side(j, 0)).moves[0],
+            Link::Facet(j) => Corner::between(end, side(j, 0), rounding).moves[0],
             Link::Mirror => {
-                let corner = Corner::between(end, end.mirrored());
+                let corner = Corner::between(end, end.mirrored(), rounding);
                 add_bodies(facet.b, corner.bodies);
                 corner.moves[0]
             }
@@ -242,7 +286,7 @@ pub(super) fn sweeps(
 /// wind the other way would cancel it). It begins a little in the ambient, where left-out
 /// vertices of the surface may be.
 fn image(facet: &Facet, start: Point, end: Point) -> Vec<Point> {
-    let back = facet.normal() * FACET_SLACK_NM;
+    let back = facet.normal() * slack_nm(facet.length());
     let (a, b) = (facet.a, facet.b);
     let moved = [a + start, b + end];
     if (moved[1] - moved[0]).dot(b - a) <= 0.0 {

@@ -235,3 +235,38 @@ fn a_front_converts_as_it_would_remove() {
     let fill = penetrate(&recess(), &BEAM, 1, 5.0, &FINE).unwrap();
     assert_near(fill.area(), 160.0, 1e-2);
 }
+
+/// The floor of a trench sees the sky between its edges: in its middle, at depth d under a space
+/// s, an isotropic gas that sticks at once brings sin(atan(s / 2d)) (any radiation handbook).
+#[test]
+fn a_trench_deepens_as_its_floor_sees_the_sky() {
+    let gas = Character { conformal: 0.0, neutral: 1.0, ..CONFORMAL };
+    let at = |depth: f64| {
+        let removed = run(&recess(), &gas, depth);
+        96.0 - bounds(&removed[1])[2]
+    };
+    // From dz/dt = 1 / sqrt(1 + (2z/s)²), for a floor that stays nearly flat.
+    let z = at(30.0);
+    let u = 2.0 * z / 32.0;
+    let time = 16.0 * (u * u.hypot(1.0) + u.asinh()) / 2.0;
+    assert_near(time, 30.0, 0.6);
+}
+
+#[test]
+fn finer_facets_converge() {
+    let mixed = Character {
+        conformal: 0.1,
+        directional: 0.6,
+        exponent: Some(20.0),
+        neutral: 0.3,
+        sticking: 0.3,
+        ..CONFORMAL
+    };
+    let area = |facet_nm: f64| {
+        let resolution = Resolution { facet_nm, ..FINE };
+        erode(&recess(), &mixed, 25.0, &resolution).unwrap().removed[1].area()
+    };
+    let [coarse, middle, fine] = [4.0, 2.0, 1.0].map(area);
+    assert_near(middle, fine, 0.004 * fine);
+    assert_near(coarse, fine, 0.01 * fine);
+}
