@@ -2,6 +2,7 @@
 
 mod disk;
 mod exit;
+mod field;
 mod output;
 mod tidy;
 
@@ -39,6 +40,7 @@ pub(crate) struct Shared {
 
 #[derive(Debug, Subcommand)]
 enum Command {
+    Field(field::Args),
     Tidy(tidy::Args),
 }
 
@@ -73,6 +75,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
         }
     }
     let ended = match &cli.command {
+        Command::Field(args) => field::run(args, &cli.shared),
         Command::Tidy(args) => tidy::run(args, &cli.shared),
     };
     ended.unwrap_or_else(|failure| output::fail(failure.exit, &failure.message))

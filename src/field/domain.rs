@@ -105,7 +105,7 @@ impl Domain {
         roles: &[Role],
         electrodes: usize,
     ) -> Result<Self, FieldError> {
-        let (conductor, named) = conductors(all, roles, electrodes)?;
+        let (conductor, named) = conductors(all, roles, electrodes, section.origin)?;
         let part = parts(all, &conductor);
         let parts = part.iter().filter(|p| **p != NONE).max().map_or(0, |p| *p as usize + 1);
         let far = [0, 1].map(|side| {
@@ -187,6 +187,7 @@ fn conductors(
     all: &Triangulation,
     roles: &[Role],
     electrodes: usize,
+    origin: Point,
 ) -> Result<(Vec<Option<usize>>, usize), FieldError> {
     let mut floating: Vec<usize> = roles
         .iter()
@@ -209,7 +210,9 @@ fn conductors(
             let other = *at_vertex[*v as usize].get_or_insert(conductor);
             let (a, b) = (sets.find(other), sets.find(conductor));
             if a != b && a.max(b) < electrodes {
-                return Err(FieldError::ElectrodesTouch(a.min(b), a.max(b)));
+                let p = all.points[*v as usize] + origin;
+                let (first, second) = (a.min(b), a.max(b));
+                return Err(FieldError::ElectrodesTouch { first, second, at_nm: [p.x, p.z] });
             }
             sets.join(a, b);
         }

@@ -20,9 +20,16 @@ pub enum FieldError {
     /// A body names an electrode, by its index, that the problem does not count.
     #[error("a body names electrode {0}, which the section does not have")]
     ElectrodeUnknown(usize),
-    /// Two electrodes, by their indices, touch: their capacitance is infinite.
-    #[error("electrode {0} touches electrode {1}")]
-    ElectrodesTouch(usize, usize),
+    /// Two electrodes touch: their capacitance is infinite.
+    #[error("electrode {first} touches electrode {second} at ({}, {}) nm", .at_nm[0], .at_nm[1])]
+    ElectrodesTouch {
+        /// Index of the one.
+        first: usize,
+        /// Index of the other.
+        second: usize,
+        /// A point of both.
+        at_nm: [f64; 2],
+    },
     /// A relative permittivity that is not positive.
     #[error("{0} is not a relative permittivity: it must be positive")]
     Permittivity(f64),
