@@ -48,7 +48,7 @@ impl From<FieldError> for Stop {
     fn from(error: FieldError) -> Self {
         match error {
             FieldError::MeshTooLarge(_) => Self::Without(Reading::Unclear(Unclear::NotConverged)),
-            FieldError::ElectrodesTouch(..) => Missing::Shorted.into(),
+            FieldError::ElectrodesTouch { .. } => Missing::Shorted.into(),
             error => Self::Failed(MeasureError::Field(error)),
         }
     }
