@@ -27,6 +27,8 @@ pub struct Report {
 pub struct FlowReport {
     /// Name of the flow.
     pub flow: String,
+    /// Its title, when it has one.
+    pub title: Option<String>,
     /// File that it was read from.
     pub file: String,
     /// The verdict.

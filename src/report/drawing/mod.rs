@@ -1,0 +1,14 @@
+//! Cross-sections as pictures: colours, one panel, a film strip of panels, SVG and PNG.
+
+mod canvas;
+mod palette;
+mod panel;
+mod panels;
+mod png;
+mod strip;
+
+pub use palette::{Fill, Pattern, fills};
+pub use panel::{Marks, Panel, VoidMark};
+pub use panels::panels;
+pub use png::{PngError, png};
+pub use strip::{frames, legend_of, strip};

@@ -1,0 +1,133 @@
+//! Tables of the page: sites, nets, findings.
+
+use maud::{Markup, html};
+
+use crate::diag::Severity;
+use crate::flow::{Dimension, Flow};
+use crate::measure::{Figure, SiteFigures};
+use crate::report::figures::figure;
+use crate::report::{FindingReport, FlowReport};
+
+fn shown(value: Option<Figure>, dimension: Dimension) -> String {
+    value.map_or("–".to_owned(), |value| figure(value, dimension))
+}
+
+/// One row a site: what the terminal shows, and more.
+pub(super) fn sites(report: &FlowReport) -> Markup {
+    html! {
+        section aria-labelledby="spaces" {
+            h2 #spaces { "Spaces" }
+            div.scroll {
+                table {
+                    thead {
+                        tr {
+                            @for name in [
+                                "space", "split", "state", "closed by", "void top", "to plane",
+                                "share", "roof", "side film", "coupling", "drop", "total", "k eff",
+                            ] { th scope="col" { (name) } }
+                        }
+                    }
+                    tbody { @for site in &report.sites { (row(site)) } }
+                }
+            }
+        }
+    }
+}
+
+fn row(site: &SiteFigures) -> Markup {
+    let nm = |value| shown(value, Dimension::Length);
+    let per_um = |value| shown(value, Dimension::CapacitancePerLength);
+    let top =
+        site.voids.iter().map(|v| v.top_nm).reduce(|a, b| if b.value > a.value { b } else { a });
+    let roof = site
+        .voids
+        .iter()
+        .filter_map(|v| v.roof_nm)
+        .reduce(|a, b| if b.value < a.value { b } else { a });
+    let share = site.voids.iter().map(|v| v.share).reduce(|a, b| Figure {
+        value: a.value + b.value,
+        low: a.low + b.low,
+        high: a.high + b.high,
+    });
+    let electrical = site.electrical.as_ref();
+    html! {
+        tr {
+            th scope="row" { (site.site) }
+            td { (site.split.as_deref().unwrap_or("–")) }
+            td { (site.state.map_or("cannot tell", |state| state.name())) }
+            td { (site.sealed_by.as_deref().unwrap_or("–")) }
+            td { (nm(top)) }
+            td { (nm(site.polish_margin_nm)) }
+            td { (shown(share, Dimension::Share)) }
+            td { (nm(roof)) }
+            td { (nm(site.side_film_nm)) }
+            td { (per_um(electrical.map(|e| e.coupling_af_per_um))) }
+            td { (shown(electrical.and_then(|e| e.coupling_drop), Dimension::Share)) }
+            td { (per_um(electrical.map(|e| e.total_af_per_um))) }
+            td { (shown(electrical.map(|e| e.k_eff), Dimension::One)) }
+        }
+    }
+}
+
+/// One row a net, or nothing.
+pub(super) fn nets(report: &FlowReport) -> Markup {
+    let ps = |value| shown(value, Dimension::Delay);
+    html! {
+        @if !report.nets.is_empty() {
+            section aria-labelledby="nets" {
+                h2 #nets { "Nets" }
+                table {
+                    thead { tr { @for name in ["net", "split", "delay, neighbours quiet", "along", "against"] { th scope="col" { (name) } } } }
+                    tbody {
+                        @for net in &report.nets {
+                            tr {
+                                th scope="row" { (net.name) }
+                                td { (net.split.as_deref().unwrap_or("–")) }
+                                td { (ps(net.delay_ps)) }
+                                td { (ps(net.delay_along_ps)) }
+                                td { (ps(net.delay_against_ps)) }
+                            }
+                        }
+                    }
+                }
+            }
+        }
+    }
+}
+
+/// Findings, gravest first, each with the flow's line.
+pub(super) fn findings(flow: &Flow, report: &FlowReport) -> Markup {
+    let mut ordered: Vec<_> = report.findings.iter().collect();
+    ordered.sort_by_key(|f| (f.waived, std::cmp::Reverse(f.severity), f.line));
+    html! {
+        section aria-labelledby="findings" {
+            h2 #findings { "Findings" }
+            @if ordered.is_empty() { p { "None." } }
+            @for finding in ordered { (one(flow, finding)) }
+        }
+    }
+}
+
+fn one(flow: &Flow, finding: &FindingReport) -> Markup {
+    let (class, word) = match (finding.waived, finding.severity) {
+        (true, _) => ("waived", "waived"),
+        (false, Severity::Error) => ("bad", "error"),
+        (false, Severity::Warning) => ("doubtful", "warning"),
+        (false, Severity::Note) => ("note", "note"),
+    };
+    let line = flow.source.text.lines().nth(finding.line - 1).unwrap_or_default();
+    html! {
+        article.finding.(class) {
+            h3 {
+                span.word { (word) } " " (finding.rule)
+                @if let Some(step) = &finding.step { " on " (step) }
+                @if let Some(site) = &finding.site { " at " (site) }
+                @if let Some(split) = &finding.split { " in " (split) }
+            }
+            p { (finding.message) }
+            @if let Some(reason) = &finding.waived_because { p { "Waived: " (reason) } }
+            @else if let Some(help) = &finding.help { p.faint { (help) } }
+            pre { span.number { (finding.line) } " " (line) }
+        }
+    }
+}
