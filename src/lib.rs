@@ -30,3 +30,4 @@ pub mod rules;
 pub mod verdict;
 
 pub mod cli;
+pub mod pipeline;

@@ -1,9 +1,12 @@
 //! The command line: one subcommand a file, the shared conventions beside them.
 
+mod check;
 mod disk;
 mod exit;
 mod field;
+mod input;
 mod output;
+mod progress;
 mod tidy;
 
 use std::ffi::OsString;
@@ -41,6 +44,7 @@ pub(crate) struct Shared {
 #[derive(Debug, Subcommand)]
 enum Command {
     Field(field::Args),
+    Check(check::Args),
     Tidy(tidy::Args),
 }
 
@@ -76,6 +80,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
     }
     let ended = match &cli.command {
         Command::Field(args) => field::run(args, &cli.shared),
+        Command::Check(args) => check::run(args, &cli.shared),
         Command::Tidy(args) => tidy::run(args, &cli.shared),
     };
     ended.unwrap_or_else(|failure| output::fail(failure.exit, &failure.message))

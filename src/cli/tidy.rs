@@ -5,6 +5,7 @@ use std::path::Path;
 use super::disk::Disk;
 use super::output::{self, Failure};
 use super::{Exit, Shared};
+use crate::syntax;
 use crate::world::read_text;
 
 /// Lay flows out in their one standard layout, comments kept.
@@ -21,13 +22,12 @@ pub(crate) struct Args {
     check: bool,
 }
 
-pub(crate) fn run(args: &Args, shared: &Shared) -> Result<Exit, Failure> {
-    let _colored = shared.colored(&std::io::stderr());
+pub(crate) fn run(args: &Args, _: &Shared) -> Result<Exit, Failure> {
     let mut untidy = false;
     for path in &args.flows {
         let name = if path == "-" { "standard input" } else { path };
         let source = read_text(&Disk, path, name).map_err(Failure::unusable)?;
-        let laid_out = source.text.clone();
+        let laid_out = syntax::tidy(&source.text);
         if args.check {
             if laid_out != source.text {
                 untidy = true;

@@ -1,0 +1,101 @@
+//! `check`: the main job.
+
+use std::io;
+use std::path::PathBuf;
+
+use clap::ValueEnum;
+
+use super::disk::Disk;
+use super::input;
+use super::output::{self, Failure};
+use super::progress::Progress;
+use super::{Exit, Shared};
+use crate::diag::Severity;
+use crate::num::tolerance::ACCURACY;
+use crate::pipeline::{self, Options};
+use crate::report::{FlowReport, Report, Verdict, text};
+
+/// Read flows, check order and materials, grow the cross-section at every space, measure voids and
+/// capacitance, hold the limits against them.
+#[derive(Debug, clap::Args)]
+pub(crate) struct Args {
+    /// Flow files; `-` is standard input.
+    #[arg(required = true, value_name = "FLOW")]
+    flows: Vec<String>,
+    /// Name of standard input in messages.
+    #[arg(long, value_name = "NAME", default_value = "standard input")]
+    name: String,
+    /// Judge the splits too.
+    #[arg(long)]
+    splits: bool,
+    /// Accuracy wanted: of positions relative to the space, of films relative or 0.25 nm, of
+    /// shares absolute, of capacitance half of it relative.
+    #[arg(long, value_name = "A", default_value_t = ACCURACY, value_parser = accuracy)]
+    accuracy: f64,
+    /// Form of the result.
+    #[arg(long, value_enum, default_value_t = Format::Text)]
+    format: Format,
+    /// Write the result to a file, whole or not at all.
+    #[arg(long, value_name = "FILE")]
+    output: Option<PathBuf>,
+    /// What else fails: `warnings`.
+    #[arg(long, value_enum, value_name = "WHAT")]
+    deny: Option<Deny>,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Format {
+    /// For people at a terminal.
+    Text,
+    /// Stable and versioned; `docs/check.schema.json` describes it.
+    Json,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Deny {
+    /// Warnings change the exit status to 1.
+    Warnings,
+}
+
+/// Reads an accuracy: 0.1 % to 10 %, as a fraction or in percent.
+fn accuracy(text: &str) -> Result<f64, String> {
+    let (number, scale) = match text.strip_suffix('%') {
+        Some(percent) => (percent.trim(), 0.01),
+        None => (text, 1.0),
+    };
+    match number.parse::<f64>() {
+        Ok(value) if (0.001..=0.1).contains(&(value * scale)) => Ok(value * scale),
+        _ => Err("wants 0.001 to 0.1, or 0.1% to 10%".to_owned()),
+    }
+}
+
+pub(crate) fn run(args: &Args, shared: &Shared) -> Result<Exit, Failure> {
+    let options = Options { accuracy: args.accuracy, splits: args.splits };
+    let mut runs = Vec::new();
+    for path in &args.flows {
+        let loaded = input::load(&Disk, path, &args.name, shared)?;
+        let progress = Progress::new(&loaded.flow.name);
+        let judged = pipeline::judge(&loaded.flow, &options, &|done, of| progress.at(done, of));
+        drop(progress);
+        runs.push(judged.map_err(|error| input::failure(error, &loaded.flow, shared))?.report);
+    }
+    let exit = runs.iter().map(|run| exit(run, args.deny)).max().unwrap_or(Exit::Holds);
+    let report = Report::of(runs);
+    let result = match args.format {
+        Format::Text => {
+            text::render(&report, args.output.is_none() && shared.colored(&io::stdout()))
+        }
+        Format::Json => report.json(),
+    };
+    output::emit(result.as_bytes(), args.output.as_deref())?;
+    Ok(exit)
+}
+
+fn exit(run: &FlowReport, deny: Option<Deny>) -> Exit {
+    let warned = run.findings.iter().any(|f| f.severity == Severity::Warning && !f.waived);
+    match run.verdict {
+        Verdict::Pass if deny == Some(Deny::Warnings) && warned => Exit::Broken,
+        Verdict::Pass => Exit::Holds,
+        Verdict::Fail | Verdict::Undecided => Exit::Broken,
+    }
+}
