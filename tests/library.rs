@@ -236,7 +236,7 @@ settings: {closure_width_nm: 0}
     assert_eq!(
         errors_of(text),
         "\
-2:37 [thick] `minimum_nm` of rule roof-too-thin is a text | a number belongs here
+2:37 [thick] `minimum_nm` of rule roof-too-thin cannot be a text | a number of at least 0 belongs here
 2:54 [fatal] `severity` cannot be `fatal`: one of note, warning, error | unknown word
 2:65 [4] rule x must be a table of keys, not a number | a table of keys belongs here
 3:30 [0] `closure_width_nm` of `settings` cannot be 0 | must be above 0 and at most 1000
@@ -371,7 +371,7 @@ fn rules_are_held_against_those_that_are_known() {
         told(&file.unknown_rules(&known, &source), &source),
         "\
 2:3 [roof-to-thin] there is no rule `roof-to-thin` | unknown rule | did you mean `roof-too-thin`?
-3:36 [minimum] rule via-meets-void has no setting `minimum` | unknown setting
+3:36 [minimum] rule via-meets-void has no setting `minimum` | unknown setting | did you mean `minimum_nm`?
 "
     );
 }
@@ -420,4 +420,21 @@ fn every_range_of_the_built_in_library_can_be() {
             assert!(number.bounds.allow(range.low) && number.bounds.allow(range.high));
         }
     }
+}
+
+const PAGE: &str = include_str!("../docs/library.md");
+
+#[test]
+fn the_page_names_every_key_and_its_file_can_be_used() {
+    let materials = library::MATERIAL_NUMBERS.iter().map(|number| number.key);
+    let processes = library::PROCESS_NUMBERS.iter().map(|number| number.key);
+    let arrival = library::ARRIVAL_NUMBERS.iter().map(|number| number.key);
+    for key in materials.chain(processes).chain(arrival) {
+        assert!(PAGE.contains(&format!("\n| `{key}` |")), "{key}");
+    }
+    for hazard in library::HAZARDS {
+        assert!(PAGE.contains(&format!("`{}`", hazard.word)), "{}", hazard.word);
+    }
+    let example = PAGE.split("```yaml\n").nth(1).unwrap().split("```").next().unwrap();
+    assert_eq!(load(example).1, "");
 }

@@ -5,6 +5,7 @@ mod disk;
 mod exit;
 mod field;
 mod input;
+mod library;
 mod output;
 mod progress;
 mod tidy;
@@ -45,6 +46,7 @@ pub(crate) struct Shared {
 enum Command {
     Field(field::Args),
     Check(check::Args),
+    Library(library::Args),
     Tidy(tidy::Args),
 }
 
@@ -81,6 +83,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
     let ended = match &cli.command {
         Command::Field(args) => field::run(args, &cli.shared),
         Command::Check(args) => check::run(args, &cli.shared),
+        Command::Library(args) => library::run(args, &cli.shared),
         Command::Tidy(args) => tidy::run(args, &cli.shared),
     };
     ended.unwrap_or_else(|failure| output::fail(failure.exit, &failure.message))

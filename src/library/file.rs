@@ -202,17 +202,17 @@ fn rules(node: &Node, defects: &mut Defects) -> Vec<Placed<RuleEntry>> {
                     let message = format!("`severity` of {what} is {}", other.kind());
                     defects.error(value.place, message, "note, warning or error belongs here");
                 }
-                (_, Value::Number(number)) if number.is_finite() => {
+                (_, Value::Number(number)) if Bounds::NOT_NEGATIVE.allow(*number) => {
                     settings.thresholds.insert(name.to_owned(), *number);
                     threshold_places.push((name.to_owned(), name_place));
                 }
                 (_, other) => {
                     let found = match other {
-                        Value::Number(_) => "not finite",
-                        other => other.kind(),
+                        Value::Number(number) => number.to_string(),
+                        other => other.kind().to_owned(),
                     };
-                    let message = format!("`{name}` of {what} is {found}");
-                    defects.error(value.place, message, "a number belongs here");
+                    let message = format!("`{name}` of {what} cannot be {found}");
+                    defects.error(value.place, message, "a number of at least 0 belongs here");
                 }
             }
         }
@@ -234,7 +234,8 @@ pub(super) fn references(
 }
 
 pub(super) fn hazards(fields: &mut Fields<'_>, defects: &mut Defects) -> Vec<String> {
-    let words: Vec<(&str, &str)> = HAZARDS.iter().map(|&word| (word, word)).collect();
+    let words: Vec<(&str, &str)> =
+        HAZARDS.iter().map(|hazard| (hazard.word, hazard.word)).collect();
     fields
         .texts("hazards", defects)
         .into_iter()

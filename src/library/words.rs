@@ -63,17 +63,36 @@ pub(super) const AMBIENTS: [(&str, Ambient); 14] = [
     ("slurry", Ambient::Slurry),
 ];
 
-/// The hazards that a material or a process may name.
-pub const HAZARDS: &[&str] = &[
-    "hf",
-    "silane",
-    "ozone",
-    "fluorine",
-    "chlorine",
-    "decomposition",
-    "ruthenium-oxide",
-    "solvent",
-    "slurry",
-    "vacuum",
-    "heat",
+/// A hazard that a material or a process may name, with the caution that goes with it.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Hazard {
+    /// As written in a library file.
+    pub word: &'static str,
+    /// What to print where it applies.
+    pub caution: &'static str,
+}
+
+/// The hazards, with the usual cautions (common practice).
+pub const HAZARDS: &[Hazard] = &[
+    Hazard { word: "hf", caution: "hydrofluoric acid: deep, delayed, possibly fatal burns" },
+    Hazard { word: "silane", caution: "silanes ignite in air" },
+    Hazard { word: "ozone", caution: "ozone: toxic, a strong oxidiser" },
+    Hazard {
+        word: "fluorine",
+        caution: "fluorinated gases (XeF2, WF6, NF3): toxic, give HF with moisture",
+    },
+    Hazard { word: "chlorine", caution: "chlorine and chlorides: toxic, corrosive with moisture" },
+    Hazard {
+        word: "decomposition",
+        caution: "decomposing polymers: carbon monoxide, aldehydes, acids; vent and abate",
+    },
+    Hazard { word: "ruthenium-oxide", caution: "RuO4: volatile, toxic" },
+    Hazard { word: "solvent", caution: "solvents: flammable vapour, harmful to breathe" },
+    Hazard { word: "slurry", caution: "slurries: irritant, some oxidising or corrosive" },
+    Hazard { word: "vacuum", caution: "vacuum: implosion, trapped gas" },
+    Hazard { word: "heat", caution: "hot surfaces and stored heat: burns" },
 ];
+
+/// What stands below every list of cautions.
+pub const GENERAL_CAUTION: &str = "A planning aid, not a recipe or a qualification. Hazards need \
+    trained, licensed staff and site-approved equipment; local codes and safety data sheets decide.";

@@ -11,7 +11,8 @@ use super::geometry::{Geometry, Traced};
 use super::question::{Figures, Question};
 use super::reading::{Missing, Reading, Unclear};
 use super::{
-    Extras, MeasureError, NetReport, SiteFigures, closing_space, nets, peak_temperature, site,
+    Extras, MeasureError, NetReport, SiteFigures, closing_space, nets, peak_temperature,
+    resistance, site,
 };
 use crate::flow::{Against, Claim, Flow, Limit, Net, Quantity, Site, State, Variant};
 use crate::library::MaterialId;
@@ -181,9 +182,7 @@ impl Measured<'_> {
     }
 
     fn resistance(&self, key: &Key) -> Reading {
-        self.traced
-            .get(key)
-            .map_or(Reading::Unclear(Unclear::NotAsked), |_| Reading::Missing(Missing::NoNumber))
+        self.traced.get(key).map_or(Reading::Unclear(Unclear::NotAsked), resistance::reading)
     }
 
     fn field(&self, key: &Key, question: &Question) -> Reading {

@@ -5,6 +5,8 @@
 //! ([`error`], [`geometry`]); the figures of a site are put together in [`site`].
 
 mod closing_space;
+mod crack;
+mod drying;
 mod electrical;
 mod error;
 mod film;
@@ -12,14 +14,18 @@ mod gap;
 mod geometry;
 #[cfg(test)]
 pub(crate) mod hand;
+mod mean_free_path;
 mod measured;
 mod model;
 mod nets;
 mod pages;
 mod peak_temperature;
+mod plate;
 mod polish;
 mod question;
 mod reading;
+mod resistance;
+mod resistivity;
 mod seal;
 mod site;
 mod via;
@@ -27,13 +33,19 @@ mod view;
 mod void;
 
 pub use closing_space::{Fineness, Grow};
+pub use crack::critical_thickness_nm;
+pub use drying::{FreeLine, drying_deflection_nm};
 pub use electrical::{Electrical, Reference};
 pub use geometry::{Geometry, Traced, for_all, site_states};
+pub use mean_free_path::mean_free_path_nm;
 pub use measured::{Measured, Traces, Wanted};
 pub use model::*;
 pub use pages::page;
+pub use plate::{clamped_deflection_nm, clamped_stress_mpa};
 pub use question::{Figures, Question};
 pub use reading::{Missing, Reading, Unclear};
+pub use resistance::{Path, line_resistance_ohm_per_um, resistance_ohm_per_um};
+pub use resistivity::{Metal, SizeEffect};
 pub use site::{Extras, site};
 
 /// Why a site could not be measured: an internal error, never a property of the flow.

@@ -8,6 +8,7 @@ pub mod figures;
 pub mod geojson;
 pub mod html;
 mod json;
+pub mod library;
 pub mod messages;
 mod model;
 mod paint;

@@ -2,6 +2,7 @@
 
 use crate::diag::Severity;
 use crate::flow::Action;
+use crate::measure::critical_thickness_nm;
 use super::frame::{Context, Findings, Found, Needs, Rule};
 
 pub static RULE: Rule = Rule {
@@ -13,10 +14,6 @@ pub static RULE: Rule = Rule {
     page: include_str!("../../docs/rules/film-cracks.md"),
     check: Some(check),
 };
-
-/// Z of a channelling crack in a film on a substrate of the same stiffness (Hutchinson and Suo
-/// 1992; Beuth 1992): energy release rate Z σ² h / E′.
-const CHANNELLING: f64 = 1.976;
 
 fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     for (index, step) in context.steps() {
@@ -34,9 +31,13 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         let (Some(modulus), Some(poisson), Some(energy)) = (modulus, poisson, energy) else {
             continue;
         };
-        let plane_strain_pa = modulus.value * 1e9 / (1.0 - poisson.value.powi(2));
-        let stress_pa = stress.value * 1e6;
-        let critical_nm = 1e9 * plane_strain_pa * energy.value / (CHANNELLING * stress_pa.powi(2));
+        let critical_nm = critical_thickness_nm(
+            stress.value,
+            modulus.value,
+            poisson.value,
+            energy.value,
+        );
+        let Some(critical_nm) = critical_nm else { continue };
         if thickness.nominal.nm() > critical_nm {
             let message = format!(
                 "{:.0} nm of {name} at {:.0} MPa tension crack: the limit is {critical_nm:.0} nm",

@@ -10,7 +10,7 @@ mod waivers;
 
 pub use finding::Finding;
 pub use frame::{Context, Needs, Rule, Threshold};
-pub use settings::{check_settings, known_threshold};
+pub use settings::lay_over;
 pub use waivers::finish;
 
 macro_rules! registry {

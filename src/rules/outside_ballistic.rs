@@ -2,6 +2,8 @@
 
 use crate::diag::Severity;
 use crate::flow::Action;
+use crate::measure::mean_free_path_nm;
+use crate::units::{Pressure, Temperature};
 use super::frame::shape::drawn_width;
 use super::frame::{Context, Findings, Found, Needs, Rule, Threshold};
 
@@ -26,12 +28,6 @@ pub static RULE: Rule = Rule {
     check: Some(check),
 };
 
-/// Boltzmann's constant, J/K (exact in the SI).
-const BOLTZMANN: f64 = 1.380_649e-23;
-
-/// A torr in Pa.
-const TORR: f64 = 101_325.0 / 760.0;
-
 fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     let (note, warning) = (findings.threshold("note_below"), findings.threshold("warning_below"));
     for (index, step) in context.steps() {
@@ -49,7 +45,11 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         else {
             continue;
         };
-        let path_nm = mean_free_path_nm(temperature.value, pressure.value, diameter.value);
+        let path_nm = mean_free_path_nm(
+            Temperature::from_celsius(temperature.value),
+            Pressure::from_torr(pressure.value),
+            diameter.value,
+        );
         let widest = context
             .moments()
             .filter(|moment| moment.index == index)
@@ -72,27 +72,5 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
                 .help("take the figures as rough, or lower the pressure")
                 .in_space(cell, space),
         );
-    }
-}
-
-/// λ = k T / (√2 π d² p), of kinetic theory.
-fn mean_free_path_nm(temperature_c: f64, pressure_torr: f64, diameter_nm: f64) -> f64 {
-    let kelvin = crate::units::Temperature::from_celsius(temperature_c).kelvin();
-    let area = std::f64::consts::PI * (diameter_nm * 1e-9).powi(2);
-    1e9 * BOLTZMANN * kelvin / (std::f64::consts::SQRT_2 * area * pressure_torr * TORR)
-}
-
-#[cfg(test)]
-mod tests {
-    use super::mean_free_path_nm;
-
-    /// Nitrogen of 0.375 nm by the formula: 49.7 µm at 1 Torr and 300 K, 0.208 µm at 600 Torr
-    /// and 753 K (hand calculation).
-    #[test]
-    fn mean_free_paths_of_nitrogen() {
-        for (kelvin, torr, um) in [(300.0, 1.0, 49.7), (673.0, 5.0, 22.3), (753.0, 600.0, 0.208)] {
-            let path = mean_free_path_nm(kelvin - 273.15, torr, 0.375) / 1000.0;
-            assert!((path / um - 1.0).abs() < 5e-3, "{path}");
-        }
     }
 }

@@ -2,6 +2,7 @@
 
 use crate::diag::Severity;
 use crate::flow::State;
+use crate::measure::{FreeLine, drying_deflection_nm};
 use super::frame::context::is_wet;
 use super::frame::shape::{drawn_width, free_height};
 use super::frame::{Context, Findings, Found, Needs, Rule, Threshold};
@@ -40,10 +41,13 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
             let Some(modulus) = moduli.map(|gpa| gpa.value).reduce(f64::min) else { continue };
             let space = drawn_width(&stage.section, spaces[0]).min(drawn_width(&stage.section, spaces[1]));
             let width = (line.top_x[1] - line.top_x[0]).min(line.bottom_x[1] - line.bottom_x[0]);
-            // Cantilever under the capillary pressure 2 γ cos θ / s (Tanaka et al. 1993):
-            // N/m over GPa is nm, and lengths to the fourth power cancel.
-            let deflection = 3.0 * tension * angle.cos() * height.powi(4)
-                / (modulus * space * width.powi(3));
+            let line = FreeLine {
+                height_nm: height,
+                width_nm: width,
+                space_nm: space,
+                youngs_modulus_gpa: modulus,
+            };
+            let deflection = drying_deflection_nm(&line, tension, angle);
             if deflection < share * space {
                 continue;
             }

@@ -1,6 +1,7 @@
 //! `roof-too-thin`: the roof of a void is thin, or weak for its width.
 
 use crate::diag::Severity;
+use crate::measure::clamped_stress_mpa;
 use super::frame::roofs::{Roof, roofs};
 use super::frame::{Context, Findings, Found, Needs, Rule, Threshold};
 
@@ -25,8 +26,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     for Roof { cell, space, thickness_nm, width_nm, material, surface_step, .. } in roofs(context) {
         let strength = material.map(|id| context.material(id));
         let strength = strength.and_then(|m| findings.want(&m.name, "strength_mpa", m.strength_mpa));
-        // Clamped strip under uniform pressure (Timoshenko; Roark): σ = p a² / 2 t².
-        let stress_mpa = 1e-3 * pressure_kpa * (width_nm / thickness_nm).powi(2) / 2.0;
+        let stress_mpa = clamped_stress_mpa(1e3 * pressure_kpa, width_nm, thickness_nm);
         let message = if thickness_nm < minimum {
             format!("the roof over the void is {thickness_nm:.1} nm thick; {minimum:.0} nm are wanted")
         } else if strength.is_some_and(|strength| stress_mpa > share * strength.value) {

@@ -1,35 +1,47 @@
-//! What library files may set: rules and thresholds that exist, thresholds that can be.
+//! A library file laid over a library, its `rules:` held against those that there are.
 
-use super::{REGISTRY, rule};
-use crate::diag::nearest;
-use crate::library::Library;
+use super::REGISTRY;
+use crate::diag::Diagnostic;
+use crate::library::{self, KnownRule, Library};
+use crate::source::Source;
 
-/// Whether a rule has a threshold of this key.
-pub fn known_threshold(rule_name: &str, key: &str) -> bool {
-    rule(rule_name).is_some_and(|rule| rule.thresholds.iter().any(|t| t.key == key))
+/// Reads a library file and lays it over a library.
+///
+/// The messages, none of them an error, say what was replaced and what is doubtful.
+///
+/// # Errors
+/// The file cannot be read, says what cannot be, or names a rule or threshold that is none.
+pub fn lay_over(
+    lower: &Library,
+    source: &Source,
+) -> Result<(Library, Vec<Diagnostic>), Vec<Diagnostic>> {
+    let file = library::parse(source)?;
+    let thresholds: Vec<Vec<&str>> = REGISTRY
+        .iter()
+        .map(|rule| rule.thresholds.iter().map(|threshold| threshold.key).collect())
+        .collect();
+    let known: Vec<KnownRule<'_>> = REGISTRY
+        .iter()
+        .zip(&thresholds)
+        .map(|(rule, thresholds)| (rule.name, thresholds.as_slice()))
+        .collect();
+    let unknown = file.unknown_rules(&known, source);
+    if unknown.is_empty() { Ok(lower.with(file, source)) } else { Err(unknown) }
 }
 
-/// What the `rules:` of the loaded library files name and no rule has, each with its nearest.
-pub fn check_settings(library: &Library) -> Vec<String> {
-    let mut wrong = Vec::new();
-    for (name, settings) in &library.rules {
-        let Some(rule) = rule(name) else {
-            let near = nearest(name, REGISTRY.iter().map(|rule| rule.name));
-            wrong.push(format!("there is no rule `{name}`{}", hint(near)));
-            continue;
-        };
-        for (key, value) in &settings.thresholds {
-            if !known_threshold(name, key) {
-                let near = nearest(key, rule.thresholds.iter().map(|t| t.key));
-                wrong.push(format!("rule `{name}` has no threshold `{key}`{}", hint(near)));
-            } else if !(value.is_finite() && *value >= 0.0) {
-                wrong.push(format!("threshold `{key}` of rule `{name}` must not be negative"));
-            }
-        }
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn rules_of_a_library_file_must_exist() {
+        let over = |text| lay_over(&Library::built_in(), &Source::new("ours.yaml", text));
+        let message = |text| over(text).unwrap_err()[0].message.clone();
+        assert!(over("rules: {roof-too-thin: {minimum_nm: 12, severity: error}}").is_ok());
+        assert_eq!(message("rules: {roof-to-thin: {}}"), "there is no rule `roof-to-thin`");
+        assert_eq!(
+            message("rules: {roof-too-thin: {minimum: 12}}"),
+            "rule roof-too-thin has no setting `minimum`"
+        );
     }
-    wrong
-}
-
-fn hint(near: Option<&str>) -> String {
-    near.map_or_else(String::new, |near| format!("; nearest is `{near}`"))
 }

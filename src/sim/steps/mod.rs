@@ -5,6 +5,7 @@
 
 mod erode;
 mod grow;
+mod pending;
 mod planar;
 mod release;
 mod shrink;
