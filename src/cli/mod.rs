@@ -3,9 +3,11 @@
 mod check;
 mod disk;
 mod exit;
+mod explain;
 mod field;
 mod input;
 mod library;
+mod order;
 mod output;
 mod progress;
 mod tidy;
@@ -44,9 +46,11 @@ pub(crate) struct Shared {
 
 #[derive(Debug, Subcommand)]
 enum Command {
-    Field(field::Args),
     Check(check::Args),
+    Explain(explain::Args),
+    Field(field::Args),
     Library(library::Args),
+    Order(order::Args),
     Tidy(tidy::Args),
 }
 
@@ -81,9 +85,11 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
         }
     }
     let ended = match &cli.command {
-        Command::Field(args) => field::run(args, &cli.shared),
         Command::Check(args) => check::run(args, &cli.shared),
+        Command::Explain(args) => explain::run(args, &cli.shared),
+        Command::Field(args) => field::run(args, &cli.shared),
         Command::Library(args) => library::run(args, &cli.shared),
+        Command::Order(args) => order::run(args, &cli.shared),
         Command::Tidy(args) => tidy::run(args, &cli.shared),
     };
     ended.unwrap_or_else(|failure| output::fail(failure.exit, &failure.message))

@@ -16,7 +16,7 @@ mod render;
 
 use petgraph::graph::{DiGraph, NodeIndex};
 
-pub use needs::{HERMETIC_FROM_NM, is_hermetic};
+pub use needs::is_hermetic;
 pub use order::{Proposal, reordered};
 
 use crate::flow::{Flow, Variant};

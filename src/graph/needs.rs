@@ -8,7 +8,7 @@ use std::collections::BTreeSet;
 
 use super::{Need, Reason};
 use crate::flow::{Action, Height, Place, Role, Step, Variant};
-use crate::library::{Ambient, Kind, Library, MaterialId, Passes};
+use crate::library::{Ambient, Kind, Library, MaterialId};
 use crate::units::{Amount, Length};
 
 /// The needs of all steps, read along `order`, sorted and each once.
@@ -22,15 +22,10 @@ pub(super) fn read(library: &Library, variant: &Variant, order: &[usize]) -> Vec
     needs.into_iter().collect()
 }
 
-/// A film thinner than this is never hermetic where its material says nothing else, in nm:
-/// below some 10 nm even tight films have pinholes (common practice).
-pub const HERMETIC_FROM_NM: f64 = 10.0;
-
 /// Whether a film of this thickness closes the way for gases.
 pub fn is_hermetic(library: &Library, material: MaterialId, thickness: Amount<Length>) -> bool {
-    let material = library.material(material);
-    let least = material.hermetic_from_nm.map_or(HERMETIC_FROM_NM, |nm| nm.value);
-    material.passes == Some(Passes::Hermetic) && thickness.nominal.nm() >= least
+    let least = library.material(material).hermetic_thickness_nm();
+    least.is_some_and(|least| thickness.nominal.nm() >= least)
 }
 
 struct Reader<'a> {
@@ -189,21 +184,21 @@ impl<'a> Reader<'a> {
         if !self.wafer_fills() {
             return;
         }
-        let previous = self.last(0, at, |p| self.seals(p)).map_or(0, |p| p + 1);
         let why = || "closes a space that something must have opened".to_owned();
         // A release without a roof waits for this film; it does not open for it.
         let opens = |p: usize| {
             let release = matches!(self.action(p), Action::Release { .. });
             self.opens(p) && (!release || self.roof_before(p).is_some())
         };
-        let openers: Vec<usize> = (previous..at).filter(|&p| opens(p)).collect();
-        for &opener in &openers {
-            self.add(needs, opener, at, Reason::Opens, why());
-        }
-        if openers.is_empty()
-            && previous == 0
-            && let Some(opener) = self.next(at, |p| self.opens(p))
-        {
+        let Some(last) = self.last(0, at, opens) else {
+            if let Some(opener) = self.next(at, opens) {
+                self.add(needs, opener, at, Reason::Opens, why());
+            }
+            return;
+        };
+        // Seals on each other share their openings: all since the seal before the last one.
+        let since = self.last(0, last, |p| self.seals(p)).map_or(0, |p| p + 1);
+        for opener in (since..=last).filter(|&p| opens(p)) {
             self.add(needs, opener, at, Reason::Opens, why());
         }
     }
@@ -307,7 +302,7 @@ impl<'a> Reader<'a> {
         let why = || "must spare what the mask covers".to_owned();
         let mut etches: Vec<usize> = (at + 1..until).filter(|&p| limited(p)).collect();
         if etches.is_empty() {
-            etches.extend(self.last(0, at, limited));
+            etches.extend(self.last(0, at, limited).or_else(|| self.next(at, limited)));
         }
         for &etch in &etches {
             self.add(needs, at, etch, Reason::Protects, why());
@@ -420,7 +415,10 @@ impl<'a> Reader<'a> {
         if !self.library.material(metal).needs_barrier {
             return;
         }
-        if let Some(film) = self.next(at, |p| self.films(p)) {
+        let cap = |p: usize| matches!(self.action(p), Action::Deposit { role: Role::Cap, .. });
+        // What a polish finds above its plane is its overburden, not its cover.
+        let earlier = || self.last(0, at, cap).filter(|_| !self.is_polish(at));
+        if let Some(film) = self.next(at, |p| self.films(p)).or_else(earlier) {
             self.add(needs, at, film, Reason::Covers, format!("covers {what}"));
         }
     }

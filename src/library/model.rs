@@ -2,6 +2,8 @@
 
 use std::collections::BTreeMap;
 
+use crate::num::tolerance::HERMETIC_FROM_NM;
+
 /// A number with its range; the range is sampled as a triangular distribution.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Ranged {
@@ -152,6 +154,14 @@ pub struct Material {
     pub hazards: Vec<String>,
     /// Where its numbers come from.
     pub source: String,
+}
+
+impl Material {
+    /// Thickness from which its films are hermetic, in nm; `None`: they never are.
+    pub fn hermetic_thickness_nm(&self) -> Option<f64> {
+        let least = || self.hermetic_from_nm.map_or(HERMETIC_FROM_NM, |nm| nm.value);
+        (self.passes == Some(Passes::Hermetic)).then(least)
+    }
 }
 
 /// The verb that a process serves.

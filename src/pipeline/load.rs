@@ -5,7 +5,8 @@ use std::sync::Arc;
 
 use crate::diag::{Diagnostic, Severity};
 use crate::flow::{self, Flow};
-use crate::library::{self, Library};
+use crate::library::Library;
+use crate::rules;
 use crate::source::Source;
 use crate::syntax;
 use crate::world::{ReadError, World, read_text};
@@ -92,8 +93,7 @@ fn use_library(
     let source = Arc::new(read_text(world, &path, &path)?);
     let input =
         |diagnostics| LoadError::Input(vec![Messages { source: Arc::clone(&source), diagnostics }]);
-    let parsed = library::parse(&source).map_err(input)?;
-    let (library, diagnostics) = onto.with(parsed, &source);
+    let (library, diagnostics) = rules::lay_over(onto, &source).map_err(input)?;
     Ok((library, Messages { source: Arc::clone(&source), diagnostics }))
 }
 

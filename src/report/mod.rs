@@ -4,6 +4,7 @@ mod build;
 pub mod capacitance;
 mod columns;
 pub mod drawing;
+pub mod explain;
 pub mod figures;
 pub mod geojson;
 pub mod html;

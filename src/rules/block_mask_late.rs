@@ -2,7 +2,7 @@
 
 use crate::diag::Severity;
 use crate::flow::Action;
-use super::frame::context::is_removal;
+use super::frame::context::{is_removal, target};
 use super::frame::{Context, Findings, Found, Needs, Rule};
 
 pub static RULE: Rule = Rule {
@@ -21,17 +21,20 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         let mut later = context.steps().skip(index + 1).take_while(|(_, step)| {
             !matches!(step.action, Action::Strip { material: stripped, .. } if stripped == material)
         });
-        let limits_any = later.any(|(_, step)| {
-            is_removal(step) || step.action.process().process.ambient.iter().any(|ambient| {
-                use crate::library::Ambient::{OxygenPlasma, Plasma};
-                matches!(ambient, OxygenPlasma | Plasma)
-            })
-        });
-        let etch = context.steps().take(index).filter(|(_, step)| is_removal(step)).last();
-        let Some((etch, _)) = etch.filter(|_| !limits_any) else { continue };
+        // A mask may as well spare its sites from a clean's chemistry.
+        let limits_any = later
+            .any(|(_, step)| is_removal(step) || matches!(step.action, Action::Clean { .. }));
+        if limits_any {
+            continue;
+        }
+        let removal = |(_, step): &(usize, &crate::flow::Step)| is_removal(step) && target(step) != Some(material);
+        let before = context.steps().take(index).filter(removal).last();
+        let after = || context.steps().skip(index + 1).find(removal);
+        let Some((etch, _)) = before.or_else(after) else { continue };
         let message = format!(
-            "the mask limits nothing: no etch follows before it goes, and {} is done",
+            "the mask limits nothing: {} is done {} it is there",
             context.graph.label(etch),
+            if etch < index { "before" } else { "when no longer" },
         );
         findings.add(
             Found::on_step(context, index, message)

@@ -37,9 +37,6 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
             Obstacle::Unknown { material } => {
                 let material = context.material(material);
                 findings.want(&material.name, "passes", material.passes);
-                if material.passes.is_some() {
-                    findings.want(&material.name, "passes_up_to_nm", material.passes_up_to_nm);
-                }
                 continue;
             }
             Obstacle::Hermetic { .. } | Obstacle::NoWay => continue,

@@ -31,7 +31,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         let mut unknown: Vec<&str> = context
             .moments()
             .filter(|moment| moment.index == index)
-            .flat_map(|moment| moment.exposed())
+            .flat_map(|moment| moment.met())
             .map(|exposure| context.material(exposure.material))
             .filter(|material| process.rate_of(material).is_none())
             .map(|material| material.name.as_str())

@@ -19,7 +19,7 @@ const ATTACKED: &[&str] = &["W", "Mo", "Ti", "Ta", "TaN", "Si", "polySi"];
 
 fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     for moment in context.moments().filter(|m| m.process().meets(&[Ambient::Fluorine])) {
-        for exposure in moment.exposed() {
+        for exposure in &moment.met() {
             let name = context.name(exposure.material);
             if !ATTACKED.contains(&name) || target(moment.step) == Some(exposure.material) {
                 continue;

@@ -33,7 +33,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
                 && (material.family == "oxide"
                     || own.zip(rate).is_some_and(|(own, rate)| rate.value >= least * own.value))
         };
-        for exposure in moment.exposed() {
+        for exposure in &moment.met() {
             if silica_like(exposure.material) {
                 let message = format!(
                     "{} is exposed to hydrofluoric acid and is not its target",

@@ -3,11 +3,13 @@
 //! A rule hands in facts site by site; `frame` makes findings of them: one a fact, waived
 //! where the flow says so, in the order of the text.
 
+mod cautions;
 mod finding;
 pub mod frame;
 mod settings;
 mod waivers;
 
+pub use cautions::{Caution, FRAME, cautions};
 pub use finding::Finding;
 pub use frame::{Context, Needs, Rule, Threshold};
 pub use settings::lay_over;

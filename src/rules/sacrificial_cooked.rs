@@ -31,10 +31,12 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
             if material.kind != Kind::Sacrificial || target(moment.step) == Some(id) {
                 continue;
             }
-            let Some([onset, _]) = findings.want(&material.name, "leaves_at_c", material.leaves_at_c)
-            else {
+            // What chemistry takes away has a highest temperature like any other material.
+            if material.leaves_at_c.is_none() && material.highest_temperature_c.is_some() {
                 continue;
-            };
+            }
+            let window = findings.want(&material.name, "leaves_at_c", material.leaves_at_c);
+            let Some([onset, _]) = window else { continue };
             if step_c <= onset - margin_c {
                 continue;
             }

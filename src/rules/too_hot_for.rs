@@ -33,7 +33,9 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         for id in on_wafer(context, moment.cell, moment.index) {
             let material = context.material(id);
             // What a release or a resist strip takes away, and what other rules judge.
-            let spared = matches!(material.kind, Kind::Sacrificial | Kind::Resist)
+            let cooked = material.kind == Kind::Sacrificial && material.leaves_at_c.is_some();
+            let spared = cooked
+                || material.kind == Kind::Resist
                 || masks.contains(&id)
                 || (releases && target(moment.step) == Some(id));
             let limit = material.highest_temperature_c.filter(|_| !spared);

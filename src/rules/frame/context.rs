@@ -47,6 +47,18 @@ impl<'a> Moment<'a> {
         &self.after.exposed_before
     }
 
+    /// What the step met: what it found exposed, and what it uncovered (the next step finds it).
+    pub fn met(&self) -> Vec<Exposure> {
+        let mut met = self.exposed().to_vec();
+        let next = self.cell.stages[self.index + 2..].iter().find(|stage| stage.acts);
+        for exposure in next.iter().flat_map(|stage| &stage.exposed_before) {
+            if met.iter().all(|known| known.material != exposure.material) {
+                met.push(exposure.clone());
+            }
+        }
+        met
+    }
+
     /// Spaces of the cell, from 0.
     pub fn spaces(&self) -> std::ops::Range<usize> {
         0..self.after.states.len()
@@ -142,9 +154,9 @@ pub fn is_polish(step: &Step) -> bool {
     matches!(step.action, Action::Polish { .. } | Action::PolishUntil { .. })
 }
 
-/// Whether a step brings the wafer into a liquid.
+/// Whether a step brings the wafer into a liquid; a polish, wet as it is, is judged as one.
 pub fn is_wet(step: &Step) -> bool {
-    step.action.process().process.meets(&[Ambient::Wet])
+    !is_polish(step) && step.action.process().process.meets(&[Ambient::Wet])
 }
 
 /// Whether a step removes material by its own chemistry.

@@ -28,16 +28,10 @@ pub struct BareContact<'a> {
 }
 
 /// Whether a body is a drifting metal of the lines. A plane below stands for a level with its
-/// own barrier; a via has its rule.
+/// own barrier.
 pub fn drifts(context: &Context<'_>, body: &Body) -> bool {
-    let stands_for_more = match body.origin {
-        Origin::Below(_) | Origin::Bulk => true,
-        Origin::Step(step) => {
-            matches!(context.variant.steps[step].action, Action::Via { .. })
-        }
-        _ => false,
-    };
-    context.material(body.material).needs_barrier && !stands_for_more
+    let below = matches!(body.origin, Origin::Below(_) | Origin::Bulk);
+    context.material(body.material).needs_barrier && !below
 }
 
 /// Contacts of drifting metals with dielectrics and semiconductors that are no barrier, at the

@@ -4,9 +4,8 @@ use super::context::Context;
 use super::shape::top;
 use crate::flow::{Action, Film};
 use crate::geom::{Point, Region};
-use crate::graph::HERMETIC_FROM_NM;
 use crate::library::{Kind, MaterialId, Passes};
-use crate::sim::{Body, CellTrace, Origin, Section};
+use crate::sim::{Body, CellTrace, Event, Origin, Section};
 
 /// Upright lines of sight over a region that are tried for a way out.
 const COLUMNS: usize = 9;
@@ -65,33 +64,36 @@ pub fn kept<'a>(context: &Context<'a>) -> Vec<Kept<'a>> {
     let mut all = Vec::new();
     for moment in context.moments() {
         let Action::Release { material, .. } = moment.step.action else { continue };
-        for body in moment.after.section.bodies.iter().filter(|b| b.material == material) {
-            for part in body.region.parts() {
-                let Some(bounds) = part.bounds() else { continue };
-                all.push(Kept {
-                    release: moment.index,
-                    material,
-                    cell: moment.cell,
-                    place: (bounds.min + bounds.max) * 0.5,
-                    area_nm2: part.area(),
-                    obstacle: obstacle(context, &moment.after.section, &part, material),
-                });
-            }
+        for event in &moment.after.events {
+            let Event::Trapped { region, share } = event else { continue };
+            let Some(bounds) = region.bounds() else { continue };
+            let section = &moment.after.section;
+            all.push(Kept {
+                release: moment.index,
+                material,
+                cell: moment.cell,
+                place: (bounds.min + bounds.max) * 0.5,
+                area_nm2: region.area(),
+                obstacle: obstacle(context, section, region, material, *share),
+            });
         }
     }
     all
 }
 
-/// The least obstacle over a region: the films straight above it, column by column.
+/// What is in the way of a region: of the films straight above it, column by column, the least
+/// obstacle. With a `share` there is a way, and it is too long.
 fn obstacle(
     context: &Context<'_>,
     section: &Section,
     region: &Region,
     own: MaterialId,
+    share: Option<f64>,
 ) -> Obstacle {
     let Some(bounds) = region.bounds() else { return Obstacle::NoWay };
     let width = bounds.max.x - bounds.min.x;
     let columns = (0..COLUMNS).map(|k| bounds.min.x + width * (k as f64 + 0.5) / COLUMNS as f64);
+    let over = columns.map(|x| over_column(context, section, region, own, x));
     let rank = |obstacle: &Obstacle| match obstacle {
         Obstacle::Thick { .. } => 0,
         Obstacle::Unknown { .. } => 1,
@@ -99,8 +101,11 @@ fn obstacle(
         Obstacle::Hermetic { .. } => 3,
         Obstacle::NoWay => 4,
     };
-    let over = columns.map(|x| over_column(context, section, region, own, x));
-    over.min_by_key(rank).unwrap_or(Obstacle::NoWay)
+    let fits = |obstacle: &Obstacle| match obstacle {
+        Obstacle::Thick { .. } => share.is_some(),
+        _ => share.is_none(),
+    };
+    over.filter(fits).min_by_key(rank).unwrap_or(Obstacle::NoWay)
 }
 
 fn over_column(
@@ -128,16 +133,14 @@ fn over_column(
         let id = body.material;
         match (material.passes, material.passes_up_to_nm) {
             (None, _) => worst = Obstacle::Unknown { material: id },
-            (Some(Passes::Hermetic), _) => {
-                let least = material.hermetic_from_nm.map_or(HERMETIC_FROM_NM, |nm| nm.value);
-                if thickness >= least {
+            (Some(Passes::Hermetic), None) => {
+                if material.hermetic_thickness_nm().is_some_and(|least| thickness >= least) {
                     return Obstacle::Hermetic { material: id, thickness_nm: thickness };
                 }
                 worst = Obstacle::Tight { material: id };
             }
             (Some(Passes::Low), None) => worst = Obstacle::Tight { material: id },
-            (Some(Passes::Permeable), None) => worst = Obstacle::Unknown { material: id },
-            (Some(Passes::Open), None) => {}
+            (Some(Passes::Permeable | Passes::Open), None) => {}
             (Some(_), Some(limit)) => {
                 let (sum, up_to, _) = budget.unwrap_or((0.0, limit.value, id));
                 budget = Some((sum + thickness, up_to.min(limit.value), id));
@@ -185,8 +188,8 @@ fn lets_pass(context: &Context<'_>, body: &Body) -> bool {
     match material.passes {
         Some(Passes::Permeable | Passes::Open) => true,
         Some(Passes::Hermetic) => {
-            let least = material.hermetic_from_nm.map_or(HERMETIC_FROM_NM, |nm| nm.value);
-            drawn_thickness(context, body).is_some_and(|nm| nm < least)
+            let least = material.hermetic_thickness_nm();
+            drawn_thickness(context, body).zip(least).is_some_and(|(nm, least)| nm < least)
         }
         Some(Passes::Low) => false,
         None => material.kind == Kind::Resist || material.kind == Kind::Sacrificial,
