@@ -4,11 +4,9 @@ use std::fmt::Write;
 
 use serde::Serialize;
 
+use super::library::{Listing, entries};
 use crate::flow::Quantity;
-use crate::library::{
-    ARRIVAL_NUMBERS, CopperBarrier, Exponent, Library, MATERIAL_NUMBERS, Material, NumberKey,
-    PROCESS_NUMBERS, Process, Ranged,
-};
+use crate::library::Library;
 use crate::measure;
 use crate::rules::{self, REGISTRY, Rule};
 
@@ -29,7 +27,7 @@ pub fn list(library: &Library) -> String {
         .map(|&quantity| (quantity.name().to_owned(), first_paragraph(measure::page(quantity))));
     let materials = library.materials.iter().map(|m| (m.name.clone(), m.label.clone()));
     let processes = library.processes.iter().map(|process| {
-        let what = format!("{} {}", word(&process.verb), process.materials.join(", "));
+        let what = format!("{} {}", process.verb_word(), process.materials.join(", "));
         (process.name.clone(), what.trim_end().to_owned())
     });
     let mut text = String::new();
@@ -60,10 +58,13 @@ pub fn page(name: &str, library: &Library) -> Option<String> {
     if let Some(&quantity) = Quantity::ALL.iter().find(|quantity| quantity.name() == name) {
         return Some(measure::page(quantity).to_owned());
     }
-    if let Some(id) = library.material_id(name) {
-        return Some(material_page(library.material(id)));
-    }
-    library.process(name).map(process_page)
+    let material = library.material_id(name).map(|id| library.material(id));
+    let process = library.process(name);
+    let listing = Listing {
+        materials: material.into_iter().collect(),
+        processes: process.into_iter().collect(),
+    };
+    (material.is_some() || process.is_some()).then(|| entry_page(name, &listing))
 }
 
 /// A rule's page, after it what it needs and its settings as loaded.
@@ -95,96 +96,9 @@ fn rule_page(rule: &Rule, library: &Library) -> String {
     text
 }
 
-fn material_page(material: &Material) -> String {
-    let mut text = format!("# {}\n\n{}\n\n", material.name, material.label);
-    let mut fact = |key: &str, value: String| {
-        if !value.is_empty() {
-            let _ = writeln!(text, "- {key}: {value}");
-        }
-    };
-    fact("kind", word(&material.kind));
-    fact("family", material.family.clone());
-    for number in MATERIAL_NUMBERS {
-        fact(number.name, shown(number, material));
-    }
-    fact("oxidizes", word(&material.oxidizes));
-    fact("needs-barrier", if material.needs_barrier { "yes".into() } else { String::new() });
-    fact(
-        "copper-barrier",
-        match material.copper_barrier {
-            CopperBarrier::No => "no".into(),
-            CopperBarrier::Yes => "yes".into(),
-            CopperBarrier::FromNm(nm) => format!("from {nm} nm"),
-        },
-    );
-    fact("passes", material.passes.map_or_else(String::new, |passes| word(&passes)));
-    fact(
-        "leaves-at",
-        match material.leaves_at_c {
-            Some([low, high]) => format!("{low} to {high} °C"),
-            None => String::new(),
-        },
-    );
-    fact("poor-adhesion-to", material.poor_adhesion_to.join(", "));
-    fact("hazards", material.hazards.join(", "));
-    let _ = write!(text, "\n## Source\n\n{}\n", material.source);
-    text
-}
-
-fn process_page(process: &Process) -> String {
-    let materials = if process.materials.is_empty() {
-        "any material".to_owned()
-    } else {
-        process.materials.join(", ")
-    };
-    let verb = word(&process.verb);
-    let default = if process.default { ", taken without `by`" } else { "" };
-    let mut text = format!("# {}\n\n{verb}: {materials}{default}\n\n", process.name);
-    let mut fact = |key: &str, value: String| {
-        if !value.is_empty() {
-            let _ = writeln!(text, "- {key}: {value}");
-        }
-    };
-    for number in PROCESS_NUMBERS {
-        fact(number.name, shown(number, process));
-    }
-    fact("ambient", process.ambient.iter().map(word).collect::<Vec<_>>().join(", "));
-    if let Some(arrival) = &process.arrival {
-        for number in ARRIVAL_NUMBERS {
-            fact(number.name, shown(number, process));
-        }
-        if arrival.exponent == Exponent::Vertical {
-            fact("exponent", "vertical".into());
-        }
-    }
-    fact("drawn-openings", if process.drawn_openings { "yes".into() } else { String::new() });
-    let table = |numbers: &std::collections::BTreeMap<String, Ranged>| {
-        numbers
-            .iter()
-            .map(|(name, number)| format!("{name} {}", ranged(*number)))
-            .collect::<Vec<_>>()
-            .join("; ")
-    };
-    fact("grows-on", table(&process.grows_on));
-    fact("rates", table(&process.rates));
-    fact("hazards", process.hazards.join(", "));
-    let _ = write!(text, "\n## Source\n\n{}\n", process.source);
-    text
-}
-
-fn shown<T>(number: &NumberKey<T>, of: &T) -> String {
-    let unit = number.unit.symbol();
-    (number.get)(of)
-        .map_or_else(String::new, |n| format!("{} {unit}", ranged(n)).trim_end().to_owned())
-}
-
-/// `4.2`, or with its range `4.2 (4.1 to 4.5)`.
-fn ranged(number: Ranged) -> String {
-    if number.low == number.high {
-        number.value.to_string()
-    } else {
-        format!("{} ({} to {})", number.value, number.low, number.high)
-    }
+/// Key by key, with ranges, source and cautions.
+fn entry_page(name: &str, listing: &Listing<'_>) -> String {
+    format!("# {name}\n\n{}", entries(listing, false))
 }
 
 /// The word by which a value is written in files.

@@ -9,7 +9,7 @@ pub mod frame;
 mod settings;
 mod waivers;
 
-pub use cautions::{Caution, FRAME, cautions};
+pub use cautions::{Caution, cautions};
 pub use finding::Finding;
 pub use frame::{Context, Needs, Rule, Threshold};
 pub use settings::lay_over;
