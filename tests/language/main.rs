@@ -2,5 +2,6 @@
 
 mod layout;
 mod mistakes;
+mod page;
 mod read;
 mod resolved;

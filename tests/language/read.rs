@@ -29,7 +29,12 @@ pub fn resolved(text: &str) -> (Flow, Vec<Diagnostic>) {
 
 /// All errors of a text, as a user sees them.
 pub fn errors(text: &str) -> String {
-    let source = Arc::new(Source::new("test.flow", text));
+    errors_of("test.flow", text)
+}
+
+/// All errors of a text of a name.
+pub fn errors_of(name: &str, text: &str) -> String {
+    let source = Arc::new(Source::new(name, text));
     let (tree, mut messages) = parse(&source);
     let resolved = flow::resolve(&tree, source.clone(), Library::built_in());
     messages.extend(resolved.err().unwrap_or_default());
