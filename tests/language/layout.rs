@@ -8,7 +8,7 @@ use gapwright::source::Source;
 use gapwright::syntax::{Content, Tree, parse, tidy};
 use proptest::prelude::*;
 
-use super::read::EXAMPLE;
+use super::read::{EXAMPLE, errors};
 
 fn read(text: &str) -> Tree {
     parse(&Source::new("test.flow", text)).0
@@ -311,6 +311,12 @@ fn statements() -> impl Strategy<Value = &'static str> {
         "  sealed # c",
         "steps # s",
         "broken \u{a7} line  ",
+        "lines 90 nm W width 32 nm space 32, 48 nm",
+        "030 seal 9 nm SiO2 by silane-pecvd",
+        "thin 030 seal 8 nm SiO2 by silane-pecvd",
+        "wide lines width 40 nm space 32 nm",
+        "sealed at 32, 48 nm after 030",
+        "coupling-drop >= 3 % against thin",
         "010 etch 9 nm SiCOH by rie # etched",
     ])
 }
@@ -340,6 +346,19 @@ proptest! {
         prop_assert_eq!(rebuilt(&text), text.clone());
         let once = tidy(&text);
         prop_assert_eq!(tidy(&once), once);
+    }
+
+    #[test]
+    fn any_statements_resolve_or_say_why(lines in prop::collection::vec(statements(), 0..40)) {
+        let text = format!("flow f\nwafer\n{}", lines.join("\n"));
+        let shown = errors(&text);
+        prop_assert!(shown.is_empty() || shown.starts_with("error: "), "{}", shown);
+    }
+
+    #[test]
+    fn any_words_resolve_or_say_why(words in prop::collection::vec(pieces(), 0..80)) {
+        let shown = errors(&words.join(" "));
+        prop_assert!(shown.is_empty() || shown.starts_with("error: "), "{}", shown);
     }
 
     #[test]
