@@ -136,3 +136,75 @@ fn trial(traced: &Traced, step: usize, space_nm: f64) -> Variant {
     }
     variant
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::flow::State;
+    use crate::measure::hand::{self, Void, flow};
+    use crate::sim::{self, Event};
+
+    /// A seal that closes at this thickness over the space, and leaves a void.
+    fn growth(
+        ratio: impl Fn(Fineness) -> f64 + Sync,
+    ) -> impl Fn(&Variant, Fineness) -> Result<Vec<CellTrace>, SimError> + Sync {
+        move |variant, fineness| {
+            let space_nm = variant.wafer.lines.spaces[0].left.nominal.nm();
+            let quarter = space_nm / 4.0;
+            let void = Void { x: [-quarter, quarter], z: [20.0, 60.0] };
+            let cell = hand::Cell { spaces: vec![space_nm, space_nm] };
+            let mut stages = cell.stages(&[(0, void), (1, void)]);
+            stages.truncate(3);
+            let closes_nm = ratio(fineness) * space_nm;
+            let Action::Deposit { thickness, .. } = &variant.steps[1].action else {
+                panic!("the second step is the seal")
+            };
+            if closes_nm > thickness.nominal.nm() {
+                stages[2].events.clear();
+                stages[2].states = vec![State::Open; 2];
+            }
+            for event in &mut stages[2].events {
+                if let Event::Closed { thickness_nm, .. } = event {
+                    *thickness_nm = closes_nm;
+                }
+            }
+            Ok(vec![CellTrace { cell: sim::Cell { sites: variant.sites() }, stages }])
+        }
+    }
+
+    fn search(spaces: &[(f64, f64)], grow: &Grow) -> Reading {
+        let flow = flow(spaces);
+        let cell = hand::Cell { spaces: vec![spaces[0].0, spaces[0].1] };
+        let stages = cell.stages(&[]);
+        let traced = Traced {
+            flow: &flow,
+            variant: &flow.variants[0],
+            site: &flow.variants[0].sites()[0],
+            coarse: &stages,
+            fine: &stages,
+        };
+        closing_space(&traced, grow).unwrap()
+    }
+
+    #[test]
+    fn a_seal_of_60_nm_closes_what_its_ratio_says() {
+        for start in [20.0, 40.0, 400.0] {
+            let found = search(&[(start, start)], &growth(|_| 0.6)).figure().unwrap();
+            assert!((found.value - 100.0).abs() < 0.05, "from {start}: {found:?}");
+        }
+    }
+
+    #[test]
+    fn two_resolutions_give_its_error() {
+        let ratio = |fineness| if fineness == Fineness::Fine { 0.6 } else { 0.588 };
+        let found = search(&[(40.0, 40.0)], &growth(ratio)).figure().unwrap();
+        assert!((found.value - 100.0).abs() < 0.1, "{found:?}");
+        assert!(found.high - found.value > 2.0 && found.high - found.value < 3.0, "{found:?}");
+    }
+
+    #[test]
+    fn a_seal_that_never_closes_has_none() {
+        let found = search(&[(40.0, 40.0)], &growth(|_| f64::INFINITY));
+        assert_eq!(found, Reading::Missing(Missing::NotClosed));
+    }
+}

@@ -58,7 +58,7 @@ impl Gap {
         let radius_nm = variant.wafer.lines.corner_radius.nominal.nm();
         Some(Self {
             state,
-            throat: last.throats_nm.get(index).copied().flatten(),
+            throat: last.throats_nm.get(index).copied().flatten().filter(|width| width.is_finite()),
             seal: seal::seal(variant, stages, index),
             side_film: least(side),
             floor_film: least(floors),

@@ -57,6 +57,16 @@ impl<'a> Traced<'a> {
         }
     }
 
+    /// The line that electrical figures are of, from 0: of an array its only one, of a row the one
+    /// right of the space, at the last space the last.
+    pub fn line(&self) -> usize {
+        let lines = self.fine.last().map_or(1, |stage| stage.section.drawn.lines.len());
+        match self.site {
+            Site::Array { .. } => 0,
+            Site::Row { space, .. } => (space - 1).min(lines - 1),
+        }
+    }
+
     /// Measures both traces.
     pub fn geometry(&self) -> Result<Geometry, MeasureError> {
         let gap = |stages: &[Stage], index| {

@@ -26,23 +26,18 @@ pub(super) struct Film {
 
 /// The step that closed a space, if its last stage shows it closed.
 ///
-/// The last closure counts that shut off something below the line top: what meets higher up
-/// shuts only the notch. Where no throat closed, it is the step whose film lies over the void.
+/// The film that closed the space since it was last open. Of several closures the last one
+/// counts that shut off something below the line top: what meets higher up shuts only the
+/// notch. Where no throat closed, it is the step whose film lies over the void.
 pub(super) fn seal(variant: &Variant, stages: &[Stage], index: usize) -> Option<Seal> {
-    let last = stages.last()?;
-    if last.states.get(index) == Some(&State::Open) {
-        return None;
-    }
+    let open = |stage: &Stage| stage.states.get(index) == Some(&State::Open);
+    let last = stages.last().filter(|last| !open(last))?;
+    let since_open = stages.iter().rposition(open).map_or(stages.len(), |at| at + 1);
     let line_top = last.section.drawn.line_top;
-    let after_opening =
-        stages.iter().rposition(|stage| stage.states.get(index) == Some(&State::Open));
-    let closing = &stages[after_opening.map_or(0, |open| open + 1)..];
-    for stage in closing {
-        let (Some(step), Some(at_closure_nm)) = (stage.step, closure_nm(stage, index, line_top))
-        else {
-            continue;
-        };
-        if let Action::Deposit { thickness, .. } = &variant.steps[step].action {
+    for stage in &stages[since_open..] {
+        if let (Some(step), Some(at_closure_nm)) = (stage.step, closure_nm(stage, index, line_top))
+            && let Action::Deposit { thickness, .. } = &variant.steps[step].action
+        {
             let margin_nm = thickness.nominal.nm() - at_closure_nm;
             return Some(Seal { step, film: Some(Film { at_closure_nm, margin_nm }) });
         }
