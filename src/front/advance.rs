@@ -112,6 +112,7 @@ fn remove_turned(
     closed: bool,
     thickness: f64,
 ) {
+    let walls = [links[0].piece.facet.from.x, links[links.len() - 1].piece.facet.to.x];
     let mut k = 0;
     while k < links.len() && links.len() > 1 {
         let to = if k + 1 < links.len() { links[k + 1].from } else { *end };
@@ -130,11 +131,10 @@ fn remove_turned(
         if !closed && (k == 0 || last) {
             // At a wall the neighbour is extended to it.
             if k == 0 {
-                links[0].from =
-                    meets_wall(&links[0].piece, gone.piece.facet.from.x, middle, thickness);
+                links[0].from = meets_wall(&links[0].piece, walls[0], middle, thickness);
             } else {
                 let neighbour = links[k - 1].piece;
-                *end = meets_wall(&neighbour, gone.piece.facet.to.x, middle, thickness);
+                *end = meets_wall(&neighbour, walls[1], middle, thickness);
                 *end_seam = end_seam.or(gone.piece.seam);
             }
         } else {
@@ -214,5 +214,17 @@ mod tests {
         let after = moved(&points, &[1.0, 0.0], 1.0);
         assert_eq!(after.len(), 2);
         assert!(after[1].0 == 5.0 && after[1].1 > 1.0, "{after:?}");
+    }
+
+    #[test]
+    fn a_notch_at_the_wall_fills_evenly_however_many_pieces_it_buries() {
+        let points: Vec<_> = (0..9).map(|k| (0.1 * f64::from(k), 0.4 * f64::from(k))).collect();
+        let after = moved(&points, &[1.0; 8], 0.2);
+        // Offset of z = 4 x by 0.2: at the wall it stands at 0.2 √17.
+        assert!(
+            after[0].0 == 0.0 && (after[0].1 - 0.2 * 17.0_f64.sqrt()).abs() < 1e-9,
+            "{after:?}"
+        );
+        assert!(after.windows(2).all(|p| p[0].0 < p[1].0), "{after:?}");
     }
 }

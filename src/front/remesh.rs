@@ -67,10 +67,8 @@ impl Mesh {
             }
             pieces.push(*piece);
         }
-        if let Some(last) = old.last().filter(|_| !chain.closed) {
-            if last.facet.normal.z > 0.0 {
-                pieces.extend(self.half_fan(last, last.facet.to, last.facet.normal, up));
-            }
+        if let Some(last) = old.last().filter(|last| !chain.closed && last.facet.normal.z > 0.0) {
+            pieces.extend(self.half_fan(last, last.facet.to, last.facet.normal, up));
         }
         chain.pieces = pieces;
     }
