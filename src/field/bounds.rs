@@ -66,17 +66,17 @@ impl Bounds {
         (high - low).max(0.0) + FIELD_ROUNDING * high
     }
 
-    /// Largest half-width over what is wanted of it: the diagonal entries and each electrode's
-    /// largest coupling, relative to themselves.
+    /// Largest half-width over what is wanted of it, relative to the entry: of the diagonal and
+    /// of the couplings that are at least half of their electrode's largest.
     pub fn excess(&self, accuracy: f64) -> f64 {
         let n = self.upper.nrows();
         let mut excess = 0.0_f64;
         for i in 0..n {
             let mean = |j: usize| 0.5 * (self.upper[(i, j)] + self.lower[(i, j)]).abs();
-            let half = |j: usize| 0.5 * (self.gap(i) * self.gap(j)).sqrt();
-            let other = (0..n).filter(|j| *j != i).max_by(|a, b| mean(*a).total_cmp(&mean(*b)));
-            for j in [Some(i), other].into_iter().flatten().filter(|j| mean(*j) > 0.0) {
-                excess = excess.max(half(j) / (accuracy * mean(j)));
+            let largest = (0..n).filter(|j| *j != i).map(mean).fold(0.0, f64::max);
+            for j in (0..n).filter(|j| mean(*j) > 0.0 && mean(*j) >= 0.5 * largest) {
+                let half = 0.5 * (self.gap(i) * self.gap(j)).sqrt();
+                excess = excess.max(half / (accuracy * mean(j)));
             }
         }
         excess

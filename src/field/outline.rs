@@ -25,9 +25,10 @@ pub(super) fn triangulate(
     let all = Triangulation::new(section, &noded)?;
     let differ = |a: usize, b: usize| roles.iter().any(|roles| roles[a] != roles[b]);
     let kept = all.edges_between(differ);
-    let thinned = arrangement::node(thin(&kept, tolerance / section.cell))?;
-    // A thinned edge that met another one was split: then thinning was too bold.
-    let edges = if thinned.len() > kept.len() { kept } else { thinned };
+    let chains = thin(&kept, tolerance / section.cell);
+    let thinned = arrangement::node(chains.clone())?;
+    // Chains that met were split or fell onto each other: then thinning was too bold.
+    let edges = if thinned.len() == chains.len() { thinned } else { kept };
     Triangulation::new(section, &edges)
 }
 

@@ -21,8 +21,8 @@ const CORNER: f64 = 0.2;
 
 /// Maxwell's matrix of a section, with proven bounds.
 ///
-/// `accuracy` is the relative half-width wanted of the diagonal entries and of each
-/// electrode's largest coupling. The bounds are proofs for the outlines on the noding grid,
+/// `accuracy` is the relative half-width wanted of the diagonal entries and of the couplings
+/// that are at least half of their electrode's largest. The bounds are proofs for the outlines on the noding grid,
 /// thinned within [`FIELD_OUTLINE`].
 ///
 /// # Errors

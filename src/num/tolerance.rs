@@ -75,8 +75,8 @@ pub const HERMETIC_FROM_NM: f64 = 10.0;
 pub const HERMETIC_SLACK: f64 = 0.01;
 
 /// Cells of the field's noding grid across the longer side of a section: outlines move by
-/// less than a cell, two parts in a million of that side.
-pub const FIELD_CELLS: f64 = 1_048_576.0;
+/// less than a cell, half a millionth of that side.
+pub const FIELD_CELLS: f64 = 4_194_304.0;
 
 /// Outlines are thinned for the field by at most this part of the section's shorter side, at
 /// an accuracy of half a per cent or coarser; in proportion to the accuracy below that.

@@ -1,6 +1,8 @@
 //! Capacitance against values from outside: closed forms, integral equations, finite elements.
 
+mod accuracy;
 mod closed_forms;
 mod command;
 mod geojson;
 mod sections;
+mod shapes;
