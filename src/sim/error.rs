@@ -43,18 +43,6 @@ pub enum SimError {
         /// Where it stands.
         span: Span,
     },
-    /// A step needs something that is not computed.
-    #[error("operation {op} at {site}: {feature} is not computed")]
-    NotComputed {
-        /// Operation number as written.
-        op: String,
-        /// The sites of the cell.
-        site: String,
-        /// What is not.
-        feature: &'static str,
-        /// Where it stands.
-        span: Span,
-    },
     /// A check of the program on itself failed; no figure of this run can be trusted.
     #[error("internal check failed after {place}: {message}")]
     Internal {
@@ -75,9 +63,6 @@ impl SimError {
             Self::Step { site, message, help, span, .. } => {
                 Some(Diagnostic::error(*span, format!("{message} at {site}")).help(help.clone()))
             }
-            Self::NotComputed { feature, span, .. } => {
-                Some(Diagnostic::error(*span, format!("{feature} is not computed")))
-            }
             Self::Front { .. } | Self::Internal { .. } => None,
         }
     }
@@ -95,8 +80,6 @@ pub(super) enum Fault {
     },
     /// The front could not be moved.
     Front(FrontError),
-    /// It needs something that is not computed.
-    NotComputed(&'static str),
     /// A check of the program on itself failed.
     Internal(String),
 }

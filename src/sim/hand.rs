@@ -4,12 +4,12 @@ use std::sync::Arc;
 
 use super::{CellTrace, Grain, SimError, run};
 use crate::flow::{
-    Action, Below, Between, Film, Flow, Height, Layer, Lines, Place, ProcessUse, Row, Site,
+    Action, Below, Between, Film, Flow, Height, Layer, Lines, Place, ProcessUse, Role, Row, Site,
     SpacePair, Step, Variant, Wafer,
 };
-use crate::library::{Library, MaterialId, Process, Ranged};
-use crate::source::{Source, Span};
-use crate::units::{Amount, Angle, Duration, Length, Temperature};
+use crate::library::{Arrival, Exponent, Library, MaterialId, Process, Ranged};
+use crate::source::{Source, Span, Spanned};
+use crate::units::{Amount, Angle, Duration, Length, Share, Temperature};
 
 /// A length without tolerance.
 pub fn nm(value: f64) -> Amount<Length> {
@@ -68,6 +68,11 @@ impl Hand {
         self
     }
 
+    pub fn bulk(self, name: &str) -> Self {
+        let bulk = Below::Bulk(Spanned::new(self.id(name), Span::default()));
+        self.wafer(|wafer| wafer.below.insert(0, bulk))
+    }
+
     pub fn taper(self, degrees: f64) -> Self {
         self.wafer(|wafer| wafer.lines.taper = Amount::exact(Angle::from_degrees(degrees)))
     }
@@ -80,6 +85,11 @@ impl Hand {
     pub fn over(self, thickness: f64, name: &str) -> Self {
         let film = self.film(thickness, name);
         self.wafer(|wafer| wafer.over.push(film))
+    }
+
+    /// Nothing in the spaces.
+    pub fn empty(self) -> Self {
+        self.wafer(|wafer| wafer.between = None)
     }
 
     pub fn between(self, name: &str) -> Self {
@@ -153,6 +163,43 @@ impl Hand {
         })
     }
 
+    /// An etch straight down, or from all sides alike, that takes only the named material.
+    pub fn etch(self, depth: f64, name: &str, conformal: f64) -> Self {
+        self.step_with("fluorocarbon-rie", only(name, conformal), |hand, process| Action::Etch {
+            depth: nm(depth),
+            material: hand.id(name),
+            process,
+        })
+    }
+
+    pub fn convert(self, depth: f64, from: &str, to: &str) -> Self {
+        self.step_with("oxygen-damage", only(from, 1.0), |hand, process| Action::Convert {
+            depth: nm(depth),
+            from: hand.id(from),
+            to: hand.id(to),
+            process,
+        })
+    }
+
+    pub fn deposit(self, thickness: f64, name: &str, process: &str) -> Self {
+        self.deposit_with(thickness, name, process, |_| {})
+    }
+
+    pub fn deposit_with(
+        self,
+        thickness: f64,
+        name: &str,
+        process: &str,
+        change: impl FnOnce(&mut Process),
+    ) -> Self {
+        self.step_with(process, change, |hand, process| Action::Deposit {
+            role: Role::Deposit,
+            thickness: nm(thickness),
+            material: hand.id(name),
+            process,
+        })
+    }
+
     pub fn cure(self, shrinks: f64, name: &str) -> Self {
         let change = |process: &mut Process| {
             process.shrinks = Ranged::exact(shrinks);
@@ -161,6 +208,15 @@ impl Hand {
         self.step_with("uv-cure", change, |_, process| Action::Cure {
             temperature: Amount::exact(Temperature::from_celsius(300.0)),
             time: Amount::exact(Duration::from_min(1.0)),
+            process,
+        })
+    }
+
+    pub fn until(self, name: &str, stop: &str, overetch: f64) -> Self {
+        self.step_with("fluorocarbon-rie", only(name, 0.0), |hand, process| Action::EtchUntil {
+            material: hand.id(name),
+            stop: hand.id(stop),
+            overetch: Amount::exact(Share::from_fraction(overetch)),
             process,
         })
     }
@@ -192,5 +248,23 @@ impl Hand {
 
     pub fn run(&self) -> Vec<CellTrace> {
         self.try_run().unwrap()
+    }
+}
+
+/// A process that acts on one material only, as a beam but for a conformal share.
+fn only(name: &str, conformal: f64) -> impl FnOnce(&mut Process) {
+    let name = name.to_owned();
+    move |process| {
+        process.arrival = Some(Arrival {
+            conformal: Ranged::exact(conformal),
+            directional: Ranged::exact(1.0 - conformal),
+            exponent: Exponent::Vertical,
+            tilt_deg: Ranged::exact(0.0),
+            sticking: Ranged::exact(1.0),
+        });
+        let families = ["metal", "barrier", "oxide", "nitride", "carbide", "low-k", "polymer"];
+        process.rates =
+            families.iter().map(|family| (family.to_string(), Ranged::exact(0.0))).collect();
+        process.rates.insert(name, Ranged::exact(2.0));
     }
 }

@@ -383,7 +383,6 @@ fn at_step(fault: Fault, step: &Step, cell: &Cell) -> SimError {
     match fault {
         Fault::Refused { message, help } => SimError::Step { op, site, message, help, span },
         Fault::Front(error) => SimError::Front { op, site, error, span },
-        Fault::NotComputed(feature) => SimError::NotComputed { op, site, feature, span },
         Fault::Internal(message) => {
             SimError::Internal { place: format!("operation {op} at {site}"), message }
         }

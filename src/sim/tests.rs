@@ -272,6 +272,147 @@ fn only_at_spares_the_other_spaces_of_a_row() {
     assert_eq!(traces[1].stages[1].states, [State::Solid, State::Open, State::Solid]);
 }
 
+#[test]
+fn a_beam_etch_takes_what_its_rates_allow_and_leaves_the_rest() {
+    let hand = Hand::new(20.0, 100.0, &[30.0]).etch(40.0, "SiCOH", 0.0);
+    let traces = hand.run();
+    let stage = last(&traces);
+    assert!((area(&stage.section, &hand, "SiCOH") - 30.0 * 60.0).abs() < 0.1);
+    assert!((area(&stage.section, &hand, "Cu") - 2000.0).abs() < 1e-3);
+    assert_eq!(stage.states, [State::Open; 2]);
+    assert!((stage.throats_nm[0].unwrap() - 30.0).abs() < 1e-3, "{:?}", stage.throats_nm);
+}
+
+#[test]
+fn an_etch_until_stops_everywhere_when_one_site_is_there() {
+    let hand = Hand::new(20.0, 100.0, &[30.0, 60.0]).until("SiCOH", "SiCN", 0.0);
+    for trace in hand.run() {
+        let left = area(&trace.stages[1].section, &hand, "SiCOH");
+        assert!(left < 1.0, "{left}");
+    }
+    let half = Hand::new(20.0, 100.0, &[30.0]).wafer(|wafer| wafer.below.clear());
+    assert!(matches!(half.until("SiCOH", "SiCN", 0.0).try_run(), Err(SimError::Step { .. })));
+}
+
+#[test]
+fn an_etch_through_all_that_is_drawn_is_an_error_and_bulk_is_deep_enough() {
+    let through = Hand::new(20.0, 100.0, &[30.0]).wafer(|wafer| wafer.below.clear());
+    let Err(SimError::Step { message, .. }) = through.etch(120.0, "SiCOH", 0.0).try_run() else {
+        panic!()
+    };
+    assert!(message.contains("everything"), "{message}");
+    let hand = Hand::new(20.0, 100.0, &[30.0]).between("SiO2").bulk("SiO2").wafer(|wafer| {
+        wafer.below.pop();
+    });
+    let deep = hand.etch(2000.0, "SiO2", 0.0);
+    let traces = deep.run();
+    let floor = last(&traces).section.ambient().bounds().unwrap().min.z;
+    assert!((floor + 1900.0).abs() < 0.5, "{floor}");
+}
+
+#[test]
+fn a_conversion_turns_as_much_as_it_takes() {
+    let hand =
+        Hand::new(20.0, 100.0, &[30.0]).step("oxygen-damage", |hand, process| Action::Convert {
+            depth: nm(5.0),
+            from: hand.id("SiCOH"),
+            to: hand.id("damaged-SiCOH"),
+            process,
+        });
+    let traces = hand.run();
+    let section = &last(&traces).section;
+    let (left, made) = (area(section, &hand, "SiCOH"), area(section, &hand, "damaged-SiCOH"));
+    assert!((left + made - 3000.0).abs() < 1e-3);
+    assert!((made - 150.0).abs() < 0.1, "{made}");
+}
+
+#[test]
+fn an_etch_at_one_space_of_a_row_spares_the_others() {
+    let hand = Hand::new(20.0, 100.0, &[30.0])
+        .row(&[20.0, 20.0], &[30.0, 40.0, 50.0])
+        .etch(40.0, "SiCOH", 0.0)
+        .only_at(&[2]);
+    let traces = hand.run();
+    assert_eq!(traces[1].stages[1].states, [State::Solid, State::Open, State::Solid]);
+    let left = area(&traces[1].stages[1].section, &hand, "SiCOH");
+    assert!((left - (15.0 + 40.0 + 25.0) * 100.0 + 40.0 * 40.0).abs() < 0.5, "{left}");
+}
+
+#[test]
+fn a_conformal_film_is_as_thick_everywhere() {
+    let hand = Hand::new(20.0, 100.0, &[30.0]).empty().deposit(5.0, "SiO2", "ald-oxide");
+    let traces = hand.run();
+    let stage = last(&traces);
+    let exact = 5.0 * 20.0 + std::f64::consts::PI * 25.0 / 2.0 + 5.0 * 30.0 + 2.0 * 5.0 * 95.0;
+    let found = area(&stage.section, &hand, "SiO2");
+    assert!((found - exact).abs() < 0.002 * exact, "{found} {exact}");
+    assert_eq!(stage.states, [State::Open; 2]);
+    assert!((stage.throats_nm[1].unwrap() - 20.0).abs() < 0.1, "{:?}", stage.throats_nm);
+    let exposed: Vec<_> = stage.exposed_before.iter().map(|e| e.length_nm).collect();
+    assert_eq!(exposed, [220.0, 30.0], "Cu on three sides, SiCN on the floor");
+}
+
+#[test]
+fn a_seal_closes_both_spaces_of_a_line_alike() {
+    let hand = Hand::new(32.0, 64.0, &[32.0]).empty().deposit(60.0, "SiO2", "silane-pecvd");
+    let traces = hand.run();
+    let stage = last(&traces);
+    let closed: Vec<_> = stage
+        .events
+        .iter()
+        .filter_map(|event| match event {
+            Event::Closed { space, thickness_nm, void, .. } => {
+                Some((*space, *thickness_nm, void.area()))
+            }
+            _ => None,
+        })
+        .collect();
+    assert_eq!(closed.len(), 2, "{:?}", stage.events);
+    assert_eq!((closed[0].0, closed[1].0), (0, 1));
+    assert_eq!((closed[0].1, closed[0].2), (closed[1].1, closed[1].2));
+    assert_eq!(stage.section.voids.len(), 2);
+    assert_eq!(stage.section.voids[0].area(), stage.section.voids[1].area());
+    assert!((stage.section.voids[1].area() - closed[1].2).abs() < 0.01 * closed[1].2);
+    assert_eq!(stage.states, [State::Sealed; 2]);
+}
+
+#[test]
+fn a_film_that_is_choosy_grows_on_metal_only() {
+    let hand = Hand::new(20.0, 100.0, &[30.0]).deposit(2.0, "Co", "selective-cobalt");
+    let found = area(&last(&hand.run()).section, &hand, "Co");
+    assert!((found - 40.0).abs() < 8.0, "{found}");
+}
+
+#[test]
+fn a_dose_reaches_down_as_far_as_its_formula_says() {
+    // Bracket 1 + 19 a/4 + 3 a²/2 at a = 1 (Gordon et al. 2003): down to twice the width of 30.
+    let (saturation, mass, celsius) = (1e19, 100.0, 200.0);
+    let flat = saturation
+        * (2.0 * std::f64::consts::PI * mass * 1.66054e-27 * 1.380649e-23 * (celsius + 273.15))
+            .sqrt();
+    let exact = crate::library::Ranged::exact;
+    let hand =
+        Hand::new(20.0, 100.0, &[30.0]).empty().deposit_with(3.0, "SiO2", "ald-oxide", |p| {
+            p.dose_pa_s = Some(exact(7.25 * flat));
+            p.saturation_per_m2 = Some(exact(saturation));
+            p.molecule_mass_u = Some(exact(mass));
+            p.temperature_c = Some(exact(celsius));
+        });
+    let traces = hand.run();
+    let section = &last(&traces).section;
+    let film = section.bodies.iter().find(|body| body.material == hand.id("SiO2")).unwrap();
+    let lowest = film.region.bounds().unwrap().min.z;
+    // Where the film ends it is round.
+    assert!((36.9..=40.0).contains(&lowest), "{lowest}");
+    let starved = Hand::new(20.0, 100.0, &[30.0]).deposit_with(3.0, "SiO2", "ald-oxide", |p| {
+        p.dose_pa_s = Some(exact(0.5 * flat));
+        p.saturation_per_m2 = Some(exact(saturation));
+        p.molecule_mass_u = Some(exact(mass));
+        p.temperature_c = Some(exact(celsius));
+    });
+    assert!(matches!(starved.try_run(), Err(SimError::Step { .. })));
+}
+
 proptest! {
     #![proptest_config(ProptestConfig::with_cases(24))]
 

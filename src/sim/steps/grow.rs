@@ -10,8 +10,8 @@ use super::super::error::Fault;
 use super::super::morphology::holds_disc;
 use super::super::operation::Deed;
 use super::super::{Event, Seam, Section, spaces};
-use super::{Bench, Change, pending};
-use crate::front::{Scene, Solid};
+use super::{Bench, Change};
+use crate::front::{self, Scene, Solid};
 use crate::geom::Region;
 
 pub(super) fn grow(deed: &Deed, section: &Section, bench: &Bench) -> Result<Change, Fault> {
@@ -29,7 +29,7 @@ pub(super) fn grow(deed: &Deed, section: &Section, bench: &Bench) -> Result<Chan
         solids = within_reach(solids, *aspect, section, &bench.ambient);
     }
     let scene = Scene { walls: section.drawn.walls, solids };
-    let growth = pending::grow(&scene, character, *thickness, &bench.resolution)?;
+    let growth = front::grow(&scene, character, *thickness, &bench.resolution)?;
     let filled = Region::union_all(scene.solids.iter().map(|solid| &solid.region));
     let mut film = growth.film.difference(&filled);
 

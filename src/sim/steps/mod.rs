@@ -5,7 +5,6 @@
 
 mod erode;
 mod grow;
-mod pending;
 mod planar;
 mod release;
 mod shrink;
