@@ -5,8 +5,9 @@
 //! boolean would find a crack or a hair between them. Here vertices within two cells of each
 //! other become one, and an edge that passes within two cells of a neighbour's vertex takes it
 //! in, as in snap rounding (Hobby, Comput. Geom. 13, 199 (1999)), but only where vertices
-//! already are. Cost: n log n, and n times the vertices under a long edge. It cannot fail.
+//! already are; hairs that this closes are shaved off. Cost: n log n, and n times the vertices under a long edge. It cannot fail.
 
+use super::hairs::shaved;
 use super::{Point, Region};
 use crate::num::tolerance::GRID_PER_NM;
 
@@ -36,7 +37,8 @@ pub fn conform(regions: &mut [Region], walls: [f64; 2]) {
     for region in regions {
         for polygon in &mut region.polygons {
             for ring in polygon.iter_mut() {
-                let corners: Vec<Vertex> = ring.iter().map(|&p| target(to_grid(p))).collect();
+                let corners = ring.iter().map(|&p| to_point(target(to_grid(p))));
+                let corners = shaved(&corners.collect::<Vec<_>>());
                 *ring = split(&corners, &kept);
             }
             if polygon[0].len() < 3 {
@@ -51,6 +53,10 @@ pub fn conform(regions: &mut [Region], walls: [f64; 2]) {
 
 fn to_grid(p: Point) -> Vertex {
     ((p.x * GRID_PER_NM).round() as i64, (p.z * GRID_PER_NM).round() as i64)
+}
+
+fn to_point(v: Vertex) -> Point {
+    Point::new(v.0 as f64 / GRID_PER_NM, v.1 as f64 / GRID_PER_NM)
 }
 
 /// For each vertex, in order, the first one within reach.
@@ -71,10 +77,10 @@ fn merge(vertices: &[Vertex]) -> Vec<Vertex> {
 }
 
 /// The ring through `corners` with the vertices beside its edges taken in.
-fn split(corners: &[Vertex], vertices: &[Vertex]) -> Vec<Point> {
+fn split(corners: &[Point], vertices: &[Vertex]) -> Vec<Point> {
     let mut ring: Vec<Vertex> = Vec::with_capacity(corners.len());
     for (at, &a) in corners.iter().enumerate() {
-        let b = corners[(at + 1) % corners.len()];
+        let [a, b] = [a, corners[(at + 1) % corners.len()]].map(to_grid);
         if a == b {
             continue;
         }
@@ -83,8 +89,7 @@ fn split(corners: &[Vertex], vertices: &[Vertex]) -> Vec<Point> {
         beside.sort_unstable();
         ring.extend(beside.into_iter().map(|(_, v)| v));
     }
-    let point = |v: Vertex| Point::new(v.0 as f64 / GRID_PER_NM, v.1 as f64 / GRID_PER_NM);
-    ring.into_iter().map(point).collect()
+    ring.into_iter().map(to_point).collect()
 }
 
 /// Vertices beside the edge, but neither at its ends nor exactly on it, with their place along it.

@@ -5,11 +5,13 @@
 
 mod conform;
 mod distance;
+mod hairs;
 mod point;
 mod region;
 mod scanline;
 
 pub use conform::conform;
+pub use hairs::shaved;
 pub use point::{Bounds, Point};
 pub use region::{Polygon, Region};
 pub use scanline::{Intervals, covered};

@@ -54,14 +54,14 @@ pub(super) fn throat(section: &Section, ambient: &Region, at: usize) -> Option<f
     let space = section.drawn.space(at);
     let top = section.effective_line_top();
     let widths = widths(ambient, &space, section.drawn.walls);
-    let below = widths.iter().filter(|&&(z, _)| z <= top);
+    let below = widths.iter().filter(|&&(z, width)| z <= top && width.is_finite());
     let widest = below.fold(None, |best: Option<(f64, f64)>, &(z, width)| match best {
         Some((_, most)) if most >= width => best,
         _ => Some((z, width)),
     })?;
     let above = widths.iter().filter(|&&(z, _)| z >= widest.0).map(|&(_, width)| width);
-    let narrowest = above.fold(f64::MAX, f64::min);
-    (narrowest > 0.0).then_some(narrowest)
+    let narrowest = above.fold(f64::INFINITY, f64::min);
+    (narrowest > 0.0 && narrowest.is_finite()).then_some(narrowest)
 }
 
 /// The widest horizontal way through the ambient in a space at every height where that may

@@ -312,13 +312,7 @@ fn an_etch_through_all_that_is_drawn_is_an_error_and_bulk_is_deep_enough() {
 
 #[test]
 fn a_conversion_turns_as_much_as_it_takes() {
-    let hand =
-        Hand::new(20.0, 100.0, &[30.0]).step("oxygen-damage", |hand, process| Action::Convert {
-            depth: nm(5.0),
-            from: hand.id("SiCOH"),
-            to: hand.id("damaged-SiCOH"),
-            process,
-        });
+    let hand = Hand::new(20.0, 100.0, &[30.0]).convert(5.0, "SiCOH", "damaged-SiCOH");
     let traces = hand.run();
     let section = &last(&traces).section;
     let (left, made) = (area(section, &hand, "SiCOH"), area(section, &hand, "damaged-SiCOH"));

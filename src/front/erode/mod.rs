@@ -163,7 +163,7 @@ impl<'a> Etch<'a> {
             .solids
             .iter()
             .zip(&self.solids)
-            .map(|(solid, left)| solid.region.difference(&surface::without_hairs(left)))
+            .map(|(solid, left)| solid.region.difference(&left.without_hairs()))
             .collect()
     }
 

@@ -2,7 +2,7 @@
 
 use super::locate::Locator;
 use crate::front::FrontError;
-use crate::geom::{Bounds, Point, Region};
+use crate::geom::{Bounds, Point, Region, shaved};
 use crate::num::tolerance::{FACET_SLACK_NM, FACET_SLACK_SHARE, SAME_LINE_NM, SIDE_STEP_NM};
 
 /// What follows a facet at one of its ends.
@@ -87,7 +87,7 @@ impl Frame {
         let mut sky = sky.into_iter();
         match (sky.next(), sky.next()) {
             (Some(ambient), None) => {
-                let voids = enclosed.into_iter().filter(|v| !without_hairs(v).is_empty());
+                let voids = enclosed.into_iter().filter(|v| !v.without_hairs().is_empty());
                 Ok((ambient, voids.collect()))
             }
             _ => Err(FrontError::Inconsistent("the sky is not one open space")),
@@ -102,46 +102,6 @@ impl Frame {
     fn holds_edge(&self, a: Point, b: Point) -> bool {
         (a.x == b.x && self.on_wall(a)) || (a.z == b.z && (a.z >= self.top || a.z <= self.bottom))
     }
-}
-
-/// A region without the hairs, out and back on the same line, that rounding leaves where two
-/// regions share a slanted edge.
-pub(super) fn without_hairs(region: &Region) -> Region {
-    let rings: Vec<_> = region.rings().map(|ring| shaved(ring)).collect();
-    if rings.iter().zip(region.rings()).all(|(new, old)| new.len() == old.len()) {
-        return region.clone();
-    }
-    Region::from_rings_even_odd(rings.into_iter().filter(|ring| ring.len() > 2))
-}
-
-fn shaved(ring: &[Point]) -> Vec<Point> {
-    let is_tip = |a: Point, b: Point, c: Point| {
-        (a - b).dot(c - b) > 0.0
-            && (c.distance_to_segment(a, b) < SAME_LINE_NM
-                || a.distance_to_segment(b, c) < SAME_LINE_NM)
-    };
-    let mut kept: Vec<Point> = Vec::with_capacity(ring.len());
-    for &p in ring {
-        while let [.., a, b] = kept[..]
-            && is_tip(a, b, p)
-        {
-            kept.pop();
-        }
-        if kept.last() != Some(&p) {
-            kept.push(p);
-        }
-    }
-    while kept.len() > 2 {
-        let n = kept.len();
-        if kept[0] == kept[n - 1] || is_tip(kept[n - 2], kept[n - 1], kept[0]) {
-            kept.pop();
-        } else if is_tip(kept[n - 1], kept[0], kept[1]) {
-            kept.remove(0);
-        } else {
-            break;
-        }
-    }
-    kept
 }
 
 /// The surface of the ambient in facets no longer than `facet_nm`, chain by chain. No facet
