@@ -19,16 +19,19 @@ use crate::geom::Point;
 const CONVEX_BLEND: [f64; 2] = [0.015, 0.03];
 const CONCAVE_BLEND: [f64; 2] = [0.17, 0.5];
 
+/// Offset lines nearer to parallel than this have no crossing to speak of.
+const LEAST_SINE: f64 = 1e-3;
+
 /// Sharper wedges at a mirror wall than this slope do not move faster along it.
 const STEEPEST: f64 = 0.02;
 
 /// The surface after `thickness` more on an open flat, at its present rates.
 pub(super) fn advanced(surface: &Surface, thickness: f64) -> Surface {
-    let chains = surface.chains.iter().map(|chain| advance(chain, thickness));
+    let chains = surface.chains.iter().map(|chain| advance(chain, surface.walls, thickness));
     Surface { chains: chains.filter(|c| !c.pieces.is_empty()).collect(), walls: surface.walls }
 }
 
-fn advance(chain: &Chain, thickness: f64) -> Chain {
+fn advance(chain: &Chain, walls: [f64; 2], thickness: f64) -> Chain {
     let pieces = &chain.pieces;
     let n = pieces.len();
     let mut links: Vec<Link> = pieces
@@ -50,7 +53,7 @@ fn advance(chain: &Chain, thickness: f64) -> Chain {
         wall_vertex(&pieces[n - 1], pieces[n - 1].facet.to, thickness)
     };
     let mut end_seam = chain.end_seam;
-    remove_turned(&mut links, &mut end, &mut end_seam, chain.closed, thickness);
+    remove_turned(&mut links, &mut end, &mut end_seam, chain.closed, walls, thickness);
     let tos: Vec<Point> = links.iter().skip(1).map(|l| l.from).chain([end]).collect();
     let pieces = links.iter().zip(tos).map(|(l, to)| l.piece.with_ends(l.from, to)).collect();
     Chain { pieces, closed: chain.closed, end_seam }
@@ -110,6 +113,7 @@ fn remove_turned(
     end: &mut Point,
     end_seam: &mut Option<usize>,
     closed: bool,
+    walls: [f64; 2],
     thickness: f64,
 ) {
     let walls = [links[0].piece.facet.from.x, links[links.len() - 1].piece.facet.to.x];
@@ -118,11 +122,15 @@ fn remove_turned(
         let to = if k + 1 < links.len() { links[k + 1].from } else { *end };
         let normal = links[k].piece.facet.normal;
         let along = Point::new(normal.z, -normal.x);
-        if (to - links[k].from).dot(along) >= -1e-12 {
+        let last = k + 1 == links.len();
+        // At a wall also what has passed through it is gone.
+        let beyond = !closed
+            && ((last && is_beyond(links[k].from, end.x, walls))
+                || (k == 0 && is_beyond(to, links[0].from.x, walls)));
+        if (to - links[k].from).dot(along) >= -1e-12 && !beyond {
             k += 1;
             continue;
         }
-        let last = k + 1 == links.len();
         let middle = (links[k].from + to) * 0.5;
         let gone = links.remove(k);
         if k < links.len() && links[k].piece.seam.is_none() {
@@ -150,11 +158,17 @@ fn remove_turned(
     }
 }
 
+/// Whether a point lies beyond the wall at `wall`.
+fn is_beyond(p: Point, wall: f64, walls: [f64; 2]) -> bool {
+    let outward = if wall - walls[0] > walls[1] - wall { 1.0 } else { -1.0 };
+    (p.x - wall) * outward > 1e-12
+}
+
 /// The crossing of two offset lines; near `fallback` when they are all but parallel.
 fn meeting(a: &Piece, b: &Piece, fallback: Point, thickness: f64) -> Point {
     let (n, m) = (a.facet.normal, b.facet.normal);
     let sine = n.cross(m);
-    if sine.abs() < 0.02 {
+    if sine.abs() < LEAST_SINE {
         return fallback;
     }
     let c = n.dot(a.facet.from) + a.rate * thickness;
@@ -164,7 +178,7 @@ fn meeting(a: &Piece, b: &Piece, fallback: Point, thickness: f64) -> Point {
 
 fn meets_wall(piece: &Piece, x: f64, fallback: Point, thickness: f64) -> Point {
     let n = piece.facet.normal;
-    if n.z.abs() < STEEPEST {
+    if n.z.abs() < LEAST_SINE {
         return Point::new(x, fallback.z);
     }
     let offset = n.dot(piece.facet.from) + piece.rate * thickness;
@@ -186,7 +200,8 @@ mod tests {
     }
 
     fn moved(points: &[(f64, f64)], rates: &[f64], by: f64) -> Vec<(f64, f64)> {
-        advance(&chain(points, rates), by).points().map(|p| (p.x, p.z)).collect()
+        let walls = [points[0].0, points[points.len() - 1].0];
+        advance(&chain(points, rates), walls, by).points().map(|p| (p.x, p.z)).collect()
     }
 
     #[test]

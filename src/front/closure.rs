@@ -12,16 +12,16 @@ use super::surface::{Chain, Piece, Surface, area};
 use super::throat::{Facing, Narrow};
 use crate::geom::{Point, Region};
 
-/// The disc of the opening over the closure width: a neck at just that width is kept.
-const OPENING_SHARE: f64 = 0.98;
+/// The disc of the opening over the closure width: parallel sides at just that width are a seam.
+const OPENING_SHARE: f64 = 1.002;
 /// Turn of the opening's arcs, in radians.
 const OPENING_STEP: f64 = 0.4;
 
 /// Cuts the surface at a throat. The chord of what stays open carries the seam of this number.
 pub(super) fn cut(surface: &mut Surface, throat: &Narrow, seam: usize) {
-    let (c, k) = place(surface, throat.piece);
+    let (c, k) = nearest(surface, throat.piece, throat.foot);
     let piece = surface.chains[c].pieces[k];
-    let p = foot(&piece.facet, throat.middle);
+    let p = foot(&piece.facet, throat.foot);
     match throat.facing {
         Facing::Left | Facing::Right => {
             let wall =
@@ -43,9 +43,18 @@ pub(super) fn cut(surface: &mut Surface, throat: &Narrow, seam: usize) {
             }
         }
         Facing::Piece(other) => {
-            let (d, m) = place(surface, other);
+            let (d, m) = nearest(surface, other, p);
+            if c == d && m <= k {
+                // Smoothing has left the neck: cut at the narrowest facets themselves.
+                let foot = surface_middle(surface, throat.piece);
+                let exact = Narrow { foot, ..*throat };
+                if foot != throat.foot {
+                    cut(surface, &exact, seam);
+                }
+                return;
+            }
             let opposite = surface.chains[d].pieces[m];
-            let q = foot(&opposite.facet, throat.middle);
+            let q = foot(&opposite.facet, p);
             let middle = (p + q) * 0.5;
             let there =
                 vec![chord(p, middle, &piece, None), chord(middle, q, &opposite, Some(seam))];
@@ -62,7 +71,7 @@ pub(super) fn cut(surface: &mut Surface, throat: &Narrow, seam: usize) {
 
 /// Chord pieces grow like the film of the side that they are taken from.
 fn chord(from: Point, to: Point, like: &Piece, seam: Option<usize>) -> Piece {
-    Piece { facet: Facet::between(from, to, like.facet.solid), seam, ..*like }
+    Piece { facet: Facet::between(from, to, like.facet.solid), seam, solved: None, ..*like }
 }
 
 fn cut_chain(
@@ -130,6 +139,11 @@ fn rotated_open(mut chain: Chain, walls: [f64; 2]) -> Chain {
     chain
 }
 
+fn surface_middle(surface: &Surface, piece: usize) -> Point {
+    let (c, k) = place(surface, piece);
+    surface.chains[c].pieces[k].facet.middle()
+}
+
 /// Chain and place in it of a piece counted over all chains.
 fn place(surface: &Surface, mut piece: usize) -> (usize, usize) {
     for (c, chain) in surface.chains.iter().enumerate() {
@@ -139,6 +153,25 @@ fn place(surface: &Surface, mut piece: usize) -> (usize, usize) {
         piece -= chain.pieces.len();
     }
     unreachable!("a piece beyond the surface")
+}
+
+/// The piece nearest to a point among those around one of its chain.
+fn nearest(surface: &Surface, piece: usize, to: Point) -> (usize, usize) {
+    let (c, k) = place(surface, piece);
+    let pieces = &surface.chains[c].pieces;
+    let distance = |k: usize| foot(&pieces[k].facet, to).distance(to);
+    let downhill = |step: isize| {
+        let mut at = k;
+        while let Some(next) = at.checked_add_signed(step).filter(|&next| next < pieces.len()) {
+            if distance(next) > distance(at) {
+                break;
+            }
+            at = next;
+        }
+        at
+    };
+    let (down, up) = (downhill(-1), downhill(1));
+    (c, if distance(down) < distance(up) { down } else { up })
 }
 
 fn foot(facet: &Facet, of: Point) -> Point {

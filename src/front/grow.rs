@@ -13,20 +13,29 @@ use super::advance::advanced;
 use super::closure::{cut, freeze};
 use super::outline::Outline;
 use super::remesh::Mesh;
-use super::seam::{Track, follow, is_followed, rename};
+use super::seam::{Track, follow, numbers, rename};
 use super::surface::Surface;
 use super::throat::{Kind, Narrow, narrow_places};
 use super::transport::Transport;
 use super::{Character, Closure, FrontError, Growth, Resolution, Scene, Throat};
-use crate::geom::Region;
+use crate::geom::{Point, Region};
 use crate::num::tolerance::SKY_MARGIN_NM;
 
 /// Largest share of a throat that one step closes.
-const STEP_OF_THROAT: f64 = 0.06;
+const STEP_OF_THROAT: f64 = 0.08;
 /// Largest step over the facet length.
 const STEP_OF_FACET: f64 = 1.0;
+/// Turn between neighbours of a fan: in proportion to facet over throat, within bounds, radians.
+const FAN_OF_FACET: f64 = 6.0;
+const FAN_RAD: [f64; 2] = [0.05, 0.2];
+/// The same where all grows at one rate and facets cost nothing: arcs within 5e-5 of their radius.
+const CONFORMAL_FAN_RAD: f64 = 0.02;
+/// Most change of a rate that is extrapolated, relative.
+const MOST_EXTRAPOLATION: f64 = 0.2;
 /// More facets than this are refused.
 const MOST_FACETS: usize = 20_000;
+/// More cuts than this in one step are refused.
+const MOST_CUTS: usize = 1000;
 /// More steps than this are refused.
 const MOST_STEPS: usize = 20_000;
 /// Facet length in a closing throat over that on the open surface.
@@ -58,6 +67,7 @@ struct Run<'a> {
     surface: Surface,
     narrow: Vec<Narrow>,
     grown: f64,
+    last_step: f64,
     closures: Vec<Closure>,
     tracks: Vec<Track>,
 }
@@ -73,20 +83,27 @@ impl<'a> Run<'a> {
         let narrow = narrow_places(&start);
         let widest = scene.walls[1] - scene.walls[0];
         let throat = narrow.iter().map(|n| n.width).fold(widest, f64::min);
+        let transport = Transport::new(*character, scene.walls);
+        let fan_rad = if transport.is_conformal() {
+            CONFORMAL_FAN_RAD
+        } else {
+            (FAN_OF_FACET * resolution.facet_nm / throat).clamp(FAN_RAD[0], FAN_RAD[1])
+        };
         let mesh = Mesh {
             facet_nm: resolution.facet_nm,
             least_nm: resolution.facet_nm * THROAT_FACET,
-            fan_rad: (6.0 * resolution.facet_nm / throat).clamp(0.05, 0.2),
+            fan_rad,
         };
         Ok(Self {
             rates: scene.solids.iter().map(|solid| solid.rate).collect(),
-            transport: Transport::new(*character, scene.walls),
+            transport,
             mesh,
             resolution,
             surface: start.clone(),
             start,
             narrow,
             grown: 0.0,
+            last_step: 0.0,
             closures: Vec::new(),
             tracks: Vec::new(),
         })
@@ -101,13 +118,15 @@ impl<'a> Run<'a> {
                 return Err(FrontError::Inconsistent("too many steps"));
             }
             self.mesh.open_corners(&mut self.surface, &self.rates);
-            self.mesh.refine(&mut self.surface, &self.narrow);
+            if !self.transport.is_conformal() {
+                self.mesh.refine(&mut self.surface, &self.narrow);
+            }
             if self.surface.len() > MOST_FACETS {
                 let facets = self.surface.len();
                 return Err(FrontError::TooFine { facets, limit: MOST_FACETS });
             }
-            self.solve_rates()?;
-            self.step(thickness - self.grown);
+            let before = self.solve_rates()?;
+            self.step(thickness - self.grown, &before);
             self.close_throats()?;
             let (surface, width) = (&self.surface, self.resolution.closure_width_nm);
             let closures = &mut self.closures;
@@ -120,19 +139,35 @@ impl<'a> Run<'a> {
         self.finish()
     }
 
-    fn solve_rates(&mut self) -> Result<(), FrontError> {
+    /// Solves the flux; what each piece had before is returned.
+    fn solve_rates(&mut self) -> Result<Vec<Option<f64>>, FrontError> {
         let guess: Vec<f64> = self.surface.pieces().map(|piece| piece.gas).collect();
         let arrival = self.transport.arrival(&self.surface.facets(), &guess)?;
+        let before = self.surface.pieces().map(|piece| piece.solved).collect();
         let rates = &self.rates;
         for (k, piece) in self.surface.pieces_mut().enumerate() {
             piece.rate = arrival.rate[k] * rates[piece.facet.solid];
+            piece.solved = Some(piece.rate);
             piece.gas = arrival.neutral.get(k).copied().unwrap_or(1.0);
         }
-        Ok(())
+        Ok(before)
+    }
+
+    /// Carries the change of the rates since the last step half a step on (Adams and Bashforth).
+    fn extrapolate(&mut self, before: &[Option<f64>], thickness: f64) {
+        if self.last_step > 0.0 {
+            let ahead = 0.5 * thickness / self.last_step;
+            for (piece, before) in self.surface.pieces_mut().zip(before) {
+                if let Some(before) = before {
+                    let most = MOST_EXTRAPOLATION * piece.rate;
+                    piece.rate += (ahead * (piece.rate - before)).clamp(-most, most);
+                }
+            }
+        }
     }
 
     /// Moves by one step of at most `remaining`, shortened to where a throat closes exactly.
-    fn step(&mut self, remaining: f64) {
+    fn step(&mut self, remaining: f64, rates_before: &[Option<f64>]) {
         let fastest = self.surface.pieces().map(|piece| piece.rate).fold(0.0, f64::max);
         if fastest == 0.0 {
             self.grown += remaining;
@@ -147,6 +182,7 @@ impl<'a> Run<'a> {
             let last = 1.05 * (throat.width - closed) / speed;
             thickness = thickness.min(if last < 1.5 * share { last } else { share });
         }
+        self.extrapolate(rates_before, thickness);
         let mut next = advanced(&self.surface, thickness);
         let mut narrow = narrow_places(&next);
         let widths = (narrowest(&self.narrow), narrowest(&narrow));
@@ -159,7 +195,8 @@ impl<'a> Run<'a> {
             let (mut open_width, mut shut_width) = (before, after);
             for turn in 0..60 {
                 let share = (open_width - closed) / (open_width - shut_width);
-                let share = if turn % 4 == 3 { 0.5 } else { share.clamp(0.01, 0.99) };
+                let share =
+                    if turn % 4 == 3 || !share.is_finite() { 0.5 } else { share.clamp(0.01, 0.99) };
                 thickness = open + (shut - open) * share;
                 next = advanced(&self.surface, thickness);
                 narrow = narrow_places(&next);
@@ -177,30 +214,34 @@ impl<'a> Run<'a> {
         self.surface = next;
         self.narrow = narrow;
         self.grown += thickness;
+        self.last_step = thickness;
     }
 
     fn close_throats(&mut self) -> Result<(), FrontError> {
         let closed = self.resolution.closure_width_nm * (1.0 + 10.0 * CLOSED_WITHIN);
-        loop {
+        for _ in 0..MOST_CUTS {
             let closing = self.narrow.iter().filter(|n| n.kind != Kind::Taper && n.width <= closed);
             let Some(&throat) = closing.min_by(|a, b| a.width.total_cmp(&b.width)) else {
                 return Ok(());
             };
             let closure = self.closures.len();
+            let notches = numbers(&self.surface);
             cut(&mut self.surface, &throat, closure);
             let sky = self.surface.top() + SKY_MARGIN_NM;
             let voids = freeze(&mut self.surface, sky, self.resolution.closure_width_nm)?;
             let void = Region::union_all(&voids);
-            let buried = self.tracks.iter().find(|track| !is_followed(track, &self.surface));
+            let left = numbers(&self.surface);
+            let buried = notches.into_iter().find(|notch| !left.contains(notch));
             match buried {
                 // The notch over a closed throat has filled up to here: its seam goes on.
-                Some(track) if void.is_empty() => rename(&mut self.surface, closure, track.closure),
+                Some(notch) if void.is_empty() => rename(&mut self.surface, closure, notch),
                 _ => {
-                    let points = vec![throat.middle];
+                    let middle = Point::new(throat.middle.x, throat.foot.z);
+                    let points = vec![middle];
                     self.tracks.push(Track { closure, points: points.clone() });
                     self.closures.push(Closure {
                         thickness_nm: self.grown,
-                        throat: throat.middle,
+                        throat: middle,
                         void,
                         seam: points,
                     });
@@ -208,6 +249,7 @@ impl<'a> Run<'a> {
             }
             self.narrow = narrow_places(&self.surface);
         }
+        Err(FrontError::Inconsistent("a throat does not stay closed"))
     }
 
     fn finish(self) -> Result<Growth, FrontError> {

@@ -8,7 +8,7 @@
 //! throats in proportion to their width. Cost: linear, times throats.
 
 use super::outline::Facet;
-use super::surface::{Chain, Piece, Surface};
+use super::surface::{Chain, LEAST_LENGTH_NM, Piece, Surface};
 use super::throat::Narrow;
 use crate::geom::Point;
 
@@ -31,7 +31,7 @@ const GRADING: f64 = 0.15;
 const SPLIT: f64 = 1.4;
 const JOIN: f64 = 0.45;
 /// Most turn at a point that joining may remove, in fan steps.
-const JOIN_TURN: f64 = 1.2;
+const JOIN_TURN: f64 = 0.6;
 
 impl Mesh {
     /// Facet length wanted at a point.
@@ -136,7 +136,7 @@ impl Mesh {
                     first.z * cosine - first.x * sine,
                 );
                 let facet = Facet { from: at, to: at, normal, solid: of.facet.solid };
-                Piece { facet, seam: None, ..*of }
+                Piece { facet, seam: None, solved: None, ..*of }
             })
             .collect()
     }
@@ -171,31 +171,55 @@ impl Mesh {
         self.halve(Piece { seam: None, ..part(middle, to) }, throats, into);
     }
 
+    /// Joins neighbours, shortest pairs first: the same seen from either end of the chain.
     fn join(&self, chain: &mut Chain, throats: &[Narrow]) {
-        let mut pieces: Vec<Piece> = Vec::with_capacity(chain.pieces.len());
-        for next in &chain.pieces {
-            let Some(last) = pieces.last_mut() else {
-                pieces.push(*next);
-                continue;
-            };
-            let (a, b) = (last.facet, next.facet);
-            let (la, lb) = (a.length(), b.length());
-            let size = self.size_at(b.from, throats);
-            let turn = a.normal.cross(b.normal).atan2(a.normal.dot(b.normal)).abs();
-            let slight = turn < JOIN_TURN * self.fan_rad && la > 0.0 && lb > 0.0;
-            let short = la.min(lb) < JOIN * size && la + lb < SPLIT * size;
-            if a.solid == b.solid && next.seam.is_none() && slight && short {
-                let share = la / (la + lb);
-                let joined = last.with_ends(a.from, b.to);
-                *last = Piece {
-                    rate: share * last.rate + (1.0 - share) * next.rate,
-                    gas: share * last.gas + (1.0 - share) * next.gas,
-                    ..joined
-                };
-            } else {
-                pieces.push(*next);
+        let pieces = &chain.pieces;
+        let mut pairs: Vec<(f64, usize)> = Vec::new();
+        for k in 1..pieces.len() {
+            if let Some(length) = self.joint(&pieces[k - 1], &pieces[k], throats) {
+                pairs.push((length, k));
             }
         }
-        chain.pieces = pieces;
+        pairs.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
+        let mut taken = vec![false; pieces.len()];
+        let mut joins = vec![false; pieces.len()];
+        for (_, k) in pairs {
+            if !taken[k - 1] && !taken[k] {
+                (taken[k - 1], taken[k], joins[k]) = (true, true, true);
+            }
+        }
+        let mut joined: Vec<Piece> = Vec::with_capacity(pieces.len());
+        for (k, next) in pieces.iter().enumerate() {
+            match joined.last_mut().filter(|_| joins[k]) {
+                Some(last) => *last = join(last, next),
+                None => joined.push(*next),
+            }
+        }
+        chain.pieces = joined;
+    }
+
+    /// Length of two neighbours over the wanted one, when they should be one piece.
+    fn joint(&self, a: &Piece, b: &Piece, throats: &[Narrow]) -> Option<f64> {
+        let (la, lb) = (a.facet.length(), b.facet.length());
+        let (n, m) = (a.facet.normal, b.facet.normal);
+        let turn = n.cross(m).atan2(n.dot(m)).abs();
+        let alike = a.facet.solid == b.facet.solid && b.seam.is_none();
+        if !alike || turn > JOIN_TURN * self.fan_rad || la.min(lb) < LEAST_LENGTH_NM {
+            return None;
+        }
+        let size = self.size_at(b.facet.from, throats);
+        let short = la.min(lb) < JOIN * size && la + lb < SPLIT * size;
+        short.then_some((la + lb) / size)
+    }
+}
+
+fn join(a: &Piece, b: &Piece) -> Piece {
+    let (la, lb) = (a.facet.length(), b.facet.length());
+    let share = la / (la + lb);
+    Piece {
+        rate: share * a.rate + (1.0 - share) * b.rate,
+        solved: a.solved.zip(b.solved).map(|(a, b)| share * a + (1.0 - share) * b),
+        gas: share * a.gas + (1.0 - share) * b.gas,
+        ..a.with_ends(a.facet.from, b.facet.to)
     }
 }

@@ -5,7 +5,7 @@
 //! the notch opens beyond 90 degrees, measured between the points of the two sides that lie two
 //! closure widths (1 nm by default) from its middle.
 
-use super::surface::Surface;
+use super::surface::{Chain, Surface};
 use crate::geom::Point;
 
 /// A seam in the making.
@@ -36,9 +36,13 @@ pub(super) fn follow(track: &mut Track, surface: &Surface, closure_width: f64) -
     true
 }
 
-/// Whether the notch of a seam is still on the surface.
-pub(super) fn is_followed(track: &Track, surface: &Surface) -> bool {
-    find(surface, track.closure).is_some()
+/// The numbers of all seams whose notch is still on the surface, in its order.
+pub(super) fn numbers(surface: &Surface) -> Vec<usize> {
+    let of = |chain: &Chain| {
+        let pieces = chain.pieces.iter().filter_map(|piece| piece.seam);
+        pieces.chain(chain.end_seam).collect::<Vec<_>>()
+    };
+    surface.chains.iter().flat_map(of).collect()
 }
 
 /// Gives the notch of one seam to another.

@@ -15,6 +15,8 @@ pub(super) struct Piece {
     pub(super) facet: Facet,
     /// Rate along the normal per thickness on an open flat, that of the solid included.
     pub(super) rate: f64,
+    /// The rate that the flux gave when it was last solved; none on a new piece.
+    pub(super) solved: Option<f64>,
     /// Γ of the neutral gas when it was last solved.
     pub(super) gas: f64,
     /// Seam that ends where this piece begins.
@@ -23,7 +25,7 @@ pub(super) struct Piece {
 
 impl Piece {
     pub(super) fn new(facet: Facet) -> Self {
-        Self { facet, rate: 0.0, gas: 1.0, seam: None }
+        Self { facet, rate: 0.0, solved: None, gas: 1.0, seam: None }
     }
 
     /// The same piece between other ends; the normal is kept when they coincide.

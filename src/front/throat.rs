@@ -21,6 +21,8 @@ pub(super) struct Narrow {
     pub(super) middle: Point,
     /// Index of the piece, chain after chain.
     pub(super) piece: usize,
+    /// Where on the surface it is narrowest, smoothed over the neck; on or near the piece.
+    pub(super) foot: Point,
     /// What it faces.
     pub(super) facing: Facing,
     /// What lies behind.
@@ -68,6 +70,12 @@ const ACROSS: f64 = -0.5;
 const WIDER: f64 = 1e-3;
 /// Parallel sides: the width rises by less than this share over two widths.
 const SLIT_RISE: f64 = 0.1;
+/// The neck of a throat: facets whose discs exceed the least by less than this share.
+const NECK_RISE: f64 = 0.15;
+/// A slit is at least this long, over half its width.
+const SLIT_LENGTH: f64 = 4.0;
+/// Cosine between the normals of parallel sides: within twice the slope of [`SLIT_RISE`].
+const PARALLEL: f64 = -0.9987;
 /// A slit ends where its width exceeds the least by this share.
 const SLIT_END: f64 = 0.02;
 
@@ -128,25 +136,31 @@ pub(super) fn narrow_places(surface: &Surface) -> Vec<Narrow> {
         let until = same_chain.then_some(own.touches);
         let inward = walk(inward_step, until, false);
         let outward = walk(-inward_step, None, true);
-        // How far outward the width stays the same, and whether that makes it a slit.
-        let slit_end = || {
+        // Where, going one way, the width is no longer the same, and where a slit ends there.
+        let stretch = |step: isize, until: Option<usize>| {
             let (mut way, mut end) = (0.0, i);
-            let mut u = (count + i) as isize - inward_step;
+            let mut u = (count + i) as isize + step;
             while u >= 0 && (u as usize) < 3 * count {
                 let at = original(u as usize);
-                if chain_of[at] != chain_of[i] || !discs[at].across {
+                let same = discs[at].across && discs[at].radius < own.radius * (1.0 + SLIT_RISE);
+                if chain_of[at] != chain_of[i] || !same || Some(u as usize) == until {
                     break;
-                }
-                if discs[at].radius > own.radius * (1.0 + SLIT_RISE) {
-                    return (way >= 4.0 * own.radius).then_some(end);
                 }
                 way += facets[at].length();
                 if u as usize / count == 1 && discs[at].radius < own.radius * (1.0 + SLIT_END) {
                     end = at;
                 }
-                u -= inward_step;
+                u += step;
             }
-            Some(end)
+            (way, end)
+        };
+        let slit_end = || {
+            let (outward, end) = stretch(-inward_step, None);
+            let (inward, _) = stretch(inward_step, until);
+            // At the vertex of a V the width varies along the facet itself.
+            let parallel = facets[i].normal.dot(unfolded[own.touches].normal) < PARALLEL;
+            let itself = if parallel { facets[i].length() } else { 0.0 };
+            (outward + inward + itself >= SLIT_LENGTH * own.radius).then_some(end)
         };
         let (kind, piece) = match (inward, outward) {
             (Walk::Wider, Walk::Wider) => (Kind::Neck, i),
@@ -166,6 +180,11 @@ pub(super) fn narrow_places(surface: &Surface) -> Vec<Narrow> {
         places.push(Narrow {
             width: 2.0 * own.radius,
             middle: own.centre,
+            foot: if kind == Kind::Neck {
+                flattest(&facets, &discs, &chain_of, piece)
+            } else {
+                facets[piece].middle()
+            },
             piece,
             facing,
             kind,
@@ -173,6 +192,62 @@ pub(super) fn narrow_places(surface: &Surface) -> Vec<Narrow> {
         });
     }
     places
+}
+
+/// Where along the surface a neck is narrowest.
+///
+/// A neck about to close is nearly parallel, and which facet of it is narrowest is chance. The
+/// place is the vertex of a parabola through the radii of all facets within [`NECK_RISE`] of
+/// the least, by least squares weighted with their lengths; the least facet itself where the parabola
+/// does not open upward, or its vertex lies beyond them.
+fn flattest(facets: &[Facet], discs: &[Disc], chain_of: &[usize], piece: usize) -> Point {
+    let here = facets[piece].middle();
+    let most = discs[piece].radius * (1.0 + NECK_RISE);
+    let belongs =
+        |k: usize| chain_of[k] == chain_of[piece] && discs[k].across && discs[k].radius < most;
+    let first = (0..piece).rev().take_while(|&k| belongs(k)).last().unwrap_or(piece);
+    let last = (piece + 1..facets.len()).take_while(|&k| belongs(k)).last().unwrap_or(piece);
+    if last - first < 4 {
+        return here;
+    }
+    let mut ways = Vec::with_capacity(last - first + 1);
+    let mut way = 0.0;
+    for facet in &facets[first..=last] {
+        ways.push(way + 0.5 * facet.length());
+        way += facet.length();
+    }
+    let scale = way;
+    // Normal equations of r = a + b t + c t², t from −½ to ½.
+    let (mut m, mut v) = ([0.0; 5], [0.0; 3]);
+    for (k, &at) in ways.iter().enumerate() {
+        let (t, weight) = (at / scale - 0.5, facets[first + k].length());
+        for (power, sum) in m.iter_mut().enumerate() {
+            *sum += weight * t.powi(power as i32);
+        }
+        for (power, sum) in v.iter_mut().enumerate() {
+            *sum += weight * t.powi(power as i32) * discs[first + k].radius;
+        }
+    }
+    let det = |a: [f64; 9]| {
+        a[0] * (a[4] * a[8] - a[5] * a[7]) - a[1] * (a[3] * a[8] - a[5] * a[6])
+            + a[2] * (a[3] * a[7] - a[4] * a[6])
+    };
+    let whole = det([m[0], m[1], m[2], m[1], m[2], m[3], m[2], m[3], m[4]]);
+    let b = det([m[0], v[0], m[2], m[1], v[1], m[3], m[2], v[2], m[4]]) / whole;
+    let c = det([m[0], m[1], v[0], m[1], m[2], v[1], m[2], m[3], v[2]]) / whole;
+    let at = (0.5 - 0.5 * b / c) * scale;
+    if !(c > 0.0 && at > 0.0 && at < way) {
+        return here;
+    }
+    let mut begin = 0.0;
+    for facet in &facets[first..=last] {
+        let length = facet.length();
+        if at <= begin + length && length > 0.0 {
+            return facet.from + (facet.to - facet.from) * ((at - begin) / length);
+        }
+        begin += length;
+    }
+    here
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -241,8 +316,8 @@ fn tangent_radius(at: Point, normal: Point, facet: &Facet, limit: f64) -> f64 {
         }
         let touch = normal * radius - facet.normal * radius;
         let along = b - a;
-        let t = (touch - a).dot(along);
-        if t >= 0.0 && t <= along.dot(along) {
+        let (t, square) = ((touch - a).dot(along), along.dot(along));
+        if square > 0.0 && t >= 0.0 && t <= square {
             return radius;
         }
     }

@@ -27,6 +27,9 @@ const COPIES: i32 = 2;
 /// Narrower intervals of direction are rounding.
 const SLIVER: f64 = 1e-14;
 
+/// Square of the distance within which a facet lies at the eye, in nm².
+const AT_THE_EYE_NM2: f64 = 1e-12;
+
 /// The outline unfolded at its mirror walls.
 pub(super) struct Scenery {
     segments: Vec<Segment>,
@@ -137,6 +140,10 @@ impl Scenery {
         let (a, b) = (from - eye.at, to - eye.at);
         // Facing means counter-clockwise as seen from the eye.
         if a.cross(b) <= 0.0 {
+            return;
+        }
+        // A facet without length at the eye itself (its fan) is no obstacle but rounding.
+        if a.dot(a).max(b.dot(b)) < AT_THE_EYE_NM2 {
             return;
         }
         let (height_a, height_b) = (a.dot(eye.normal), b.dot(eye.normal));

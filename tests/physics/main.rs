@@ -5,4 +5,5 @@ mod buffers;
 mod dense_array;
 mod flux;
 mod monte_carlo;
+mod moving;
 mod scenes;

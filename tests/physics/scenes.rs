@@ -37,6 +37,23 @@ impl Array {
         Scene { walls, solids: vec![self.floor(walls), line] }
     }
 
+    /// One line and half a space to each side.
+    pub fn cell(&self) -> Scene {
+        let half = 0.5 * (self.w + self.s);
+        let walls = [-half, half];
+        let line = Solid { region: self.line(0.0, walls), rate: 1.0 };
+        Scene { walls, solids: vec![self.floor(walls), line] }
+    }
+
+    /// Several lines, walls in the middle of the outer spaces.
+    pub fn row(&self, lines: usize) -> Scene {
+        let pitch = self.w + self.s;
+        let walls = [0.0, pitch * lines as f64];
+        let line = |k: usize| self.line((k as f64 + 0.5) * pitch, walls);
+        let lines = (0..lines).map(|k| Solid { region: line(k), rate: 1.0 });
+        Scene { walls, solids: std::iter::once(self.floor(walls)).chain(lines).collect() }
+    }
+
     /// Area of the drawn space in half a cell.
     pub fn half_space_area(&self) -> f64 {
         self.h * 0.5 * (self.s - self.run())
