@@ -268,6 +268,28 @@ mod tests {
     }
 
     #[test]
+    fn a_bar_of_copper_resists_by_its_size() {
+        // Cu, ρ0 1.72 µΩ cm, λ 39 nm, R 0.3, p 0, grain as wide as the line: 20 × 40 nm has 5.595 µΩ cm
+        // (closed forms of Fuchs and Sondheimer, Mayadas and Shatzkes); 80 nm high it has less of
+        // the surface term, ⅜ · 39 · (1/40 − 1/80) · 1.72.
+        let flow = flow(&[(40.0, 40.0)]);
+        let cell = Cell { spaces: vec![40.0, 40.0] };
+        let stages = cell.stages(&[]);
+        let site = &flow.variants[0].sites()[0];
+        let traced = Traced {
+            flow: &flow,
+            variant: &flow.variants[0],
+            site,
+            coarse: &stages,
+            fine: &stages,
+        };
+        let resistivity = 5.595 - 0.375 * 39.0 * (1.0 / 40.0 - 1.0 / 80.0) * 1.72;
+        let by_hand = resistivity * 1e4 / (20.0 * 80.0);
+        let found = crate::measure::resistance::reading(&traced).figure().unwrap();
+        assert!((found.value / by_hand - 1.0).abs() < 2e-3, "{found:?}, by hand {by_hand}");
+    }
+
+    #[test]
     fn several_voids_give_the_highest_top_the_lowest_bottom_and_the_sum() {
         let flow = flow(&[(40.0, 40.0)]);
         let cell = Cell { spaces: vec![40.0, 40.0] };

@@ -8,7 +8,6 @@ use super::Figure;
 use super::geometry::Traced;
 use super::reading::{Missing, Reading, Unclear};
 use super::resistivity::{Metal, SizeEffect};
-use crate::flow::Site;
 use crate::geom::Region;
 use crate::library::{Kind, Library, Material};
 use crate::sim::{Origin, Section, Stage};
@@ -66,12 +65,7 @@ pub fn resistance_ohm_per_um(paths: &[Path]) -> Option<f64> {
 pub(super) fn reading(traced: &Traced<'_>) -> Reading {
     let of = |stages: &[Stage]| {
         let section = &stages.last()?.section;
-        let line = match traced.site {
-            Site::Array { .. } => 0,
-            // The line right of the space; at the last space the last line.
-            Site::Row { space, .. } => (space - 1).min(section.drawn.lines.len() - 1),
-        };
-        Some(line_resistance_ohm_per_um(section, line, &traced.flow.library))
+        Some(line_resistance_ohm_per_um(section, traced.line(), &traced.flow.library))
     };
     match (of(traced.coarse), of(traced.fine)) {
         (Some(Ok(coarse)), Some(Ok(fine))) => {
