@@ -67,7 +67,7 @@ fn flow(
 ) -> Option<Flow> {
     let draft = Draft::of(tree, context);
     let wafers = draft.wafers(context);
-    let places = sites::Places::of(&wafers, &draft, context);
+    let places = sites::Places::of(&wafers, &draft);
     let variants = variants(&draft, wafers, &places, context);
     let (nets, next_level) = nets::resolve(&draft, &places, context);
     let limits = limits::limits(&draft, &variants, &nets, &places, context);

@@ -3,8 +3,8 @@
 use super::cursor::{Cursor, Parsed};
 use super::lex::TokenKind;
 use super::sizes::{
-    MAX_LENGTH_NM, MAX_LOAD_AF, MAX_NET_LENGTH_NM, MAX_OVERETCH, MAX_RESISTANCE_OHM, MAX_TAPER_DEG,
-    MAX_TEMPERATURE_C, MAX_TIME_S, MIN_LENGTH_NM,
+    MAX_LENGTH_NM, MAX_LOAD_AF, MAX_NET_LENGTH_NM, MAX_OVERETCH, MAX_RESISTANCE_OHM, MAX_SITES,
+    MAX_TAPER_DEG, MAX_TEMPERATURE_C, MAX_TIME_S, MIN_LENGTH_NM,
 };
 use super::tree::{Number, Written};
 use crate::diag::Diagnostic;
@@ -90,9 +90,20 @@ impl Cursor<'_> {
     pub fn amounts<T: Dimensioned>(&mut self, scale: &Scale) -> Parsed<Vec<Written<T>>> {
         let mut items = vec![self.item(scale.what)?];
         while self.eat(TokenKind::Comma).is_some() {
+            self.room_in_list(items.len())?;
             items.push(self.item(scale.what)?);
         }
         self.read_all(&items, scale)
+    }
+
+    /// A list of sites or of their lengths holds no more than a flow may have sites.
+    pub fn room_in_list(&self, length: usize) -> Parsed<()> {
+        if length < MAX_SITES {
+            return Ok(());
+        }
+        let span = self.peek().map_or(self.whole(), |token| token.span);
+        Err(Diagnostic::error(span, format!("a list of more than {MAX_SITES} items"))
+            .label(format!("a flow may have {MAX_SITES} sites")))
     }
 
     /// Takes an amount whose unit is checked later.

@@ -13,7 +13,7 @@ use super::sizes::{MAX_BYTES, MAX_STATEMENTS};
 use super::step::step_statement;
 use super::tree::{Broken, Content, Line, Statement, Tree};
 use super::wafer::wafer_statement;
-use super::words::{STATES, Section, WAFER_WORDS};
+use super::words::{STATES, STEP_VERBS, Section, WAFER_WORDS};
 use crate::diag::nearest;
 use crate::diag::{Diagnostic, Severity};
 use crate::source::{Source, Span};
@@ -189,10 +189,12 @@ impl Reader {
             _ => {}
         }
         if let Some(meant) = self.meant_section(text, tokens) {
-            self.section = Some(meant);
             let word = meant.word();
             let known = self.opened.iter().any(|(opened, _)| *opened == meant);
-            self.opened.push((meant, first.span));
+            if !known {
+                self.section = Some(meant);
+                self.opened.push((meant, first.span));
+            }
             return Err(Diagnostic::error(
                 first.span,
                 format!("a statement of `{word}` outside of its section"),
@@ -218,8 +220,8 @@ impl Reader {
     fn meant_section(&self, text: &str, tokens: &[Token]) -> Option<Section> {
         let first = tokens.first()?;
         let word = &text[first.span.start..first.span.end];
-        let second = tokens.get(1).map(|token| token.kind);
-        let numbered = first.kind == TokenKind::Number && second == Some(TokenKind::Word);
+        let second = tokens.get(1).map_or("", |token| &text[token.span.start..token.span.end]);
+        let numbered = first.kind == TokenKind::Number && STEP_VERBS.contains(&second);
         match self.section {
             None | Some(Section::Wafer | Section::Nets | Section::Limits | Section::Waivers)
                 if numbered =>

@@ -19,6 +19,7 @@ impl Cursor<'_> {
     pub fn sites(&mut self) -> Parsed<Vec<Site>> {
         let mut raw = vec![self.raw_site()?];
         while self.eat(TokenKind::Comma).is_some() {
+            self.room_in_list(raw.len())?;
             raw.push(self.raw_site()?);
         }
         self.read_sites(raw)
@@ -29,6 +30,7 @@ impl Cursor<'_> {
         let mut raw = vec![];
         let mut shares = vec![];
         loop {
+            self.room_in_list(raw.len())?;
             raw.push(self.raw_site()?);
             shares.push(self.item("a share in percent")?);
             if self.eat(TokenKind::Comma).is_none() {
@@ -106,6 +108,7 @@ impl Cursor<'_> {
         let mut items = vec![];
         let mut paired = vec![];
         loop {
+            self.room_in_list(paired.len())?;
             items.push(self.item("a space")?);
             let right = self.eat(TokenKind::Bar).is_some();
             paired.push(right);
@@ -133,6 +136,10 @@ impl Cursor<'_> {
         if !self.sees(TokenKind::Number) {
             let place = self.place("a height")?;
             return Ok(Height { offset: Amount::default(), place, span: self.since(start) });
+        }
+        if let Some(number) = self.peek().filter(|token| self.text(token.span).starts_with('-')) {
+            return Err(Diagnostic::error(number.span, "a height cannot be negative")
+                .label("write `below` for a height under a place"));
         }
         let length = self.amount::<Length>(&Scale::HEIGHT)?.value;
         let below = self.eat_word("below");

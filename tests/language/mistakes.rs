@@ -66,11 +66,14 @@ mistakes! {
     title_without_quotes: "\"Copper lines sealed with a lean oxide\"" => "Copper";
     only_at_on_a_deposit: "SiCN by ald-carbonitride" => "SiCN by ald-carbonitride only at 32 nm";
     note_without_quotes: "SiCN by ald-carbonitride" => "SiCN by ald-carbonitride thin but dense";
+    negative_height: "to 70 ± 6 nm above lines" => "to -5 nm above lines";
     unknown_place: "above lines" => "above line";
     unknown_wafer_statement: "liner    2 nm" => "linear   2 nm";
     backslash_within_a_line: "liner    2 nm TaN" => "liner \\ 2 nm TaN";
 
     // Sections and the file.
+    wafer_statement_among_steps: "020  deposit" => "film 5 nm SiCN\n  020  deposit";
+    step_among_limits: "  solid at 96 nm" => "  080 clean by wet-clean\n  solid at 96 nm";
     misspelt_section: "\nsteps\n" => "\nstep\n";
     section_with_colon: "\nsteps\n" => "\nsteps:\n";
     section_in_capitals: "\nlimits\n" => "\nLIMITS\n";
@@ -89,6 +92,7 @@ mistakes! {
     too_few_row_spaces: "  liner" => "  row edge width 26, 26 nm space 26, 60 nm\n  liner";
     no_such_space: "sealed at 32, 48 nm" => "sealed at 32, 40 nm";
     no_such_row: "sealed at 32, 48 nm" => "sealed at edge:1";
+    several_missing_spaces: "only at 32, 48 nm" => "only at 31, 49 nm";
     unknown_split_step: "020 skip" => "025 skip";
     split_without_number: "no-liner 020 skip" => "no-liner skip";
     split_of_a_repeated_word: "thin     030 seal 80 nm SiO2 by silane-pecvd" => "thin film 30 nm SiCOH";

@@ -2,6 +2,7 @@
 
 use gapwright::diag::Severity;
 use gapwright::flow::{Action, Against, Claim, Flow, Height, Place, Quantity, Role, Site, State};
+use gapwright::syntax::tidy;
 use gapwright::units::{Amount, Length};
 
 use super::read::{EXAMPLE, changed, errors, resolved};
@@ -340,6 +341,11 @@ fn sixty_four_sites_and_no_more() {
     };
     assert_eq!(errors(&spaces(64)), "");
     assert!(errors(&spaces(65)).contains("64 sites"));
+    let row = "row edge width 26 nm space 26, 60 nm";
+    let with_row = spaces(63).replace("nm\nsteps", &format!("nm\n{row}\nsteps"));
+    assert!(errors(&with_row).contains("65 spaces"));
+    let long = spaces(3) + "limits\nsealed at " + &"30, ".repeat(64) + "30 nm\n";
+    assert!(errors(&long).contains("64 items"));
 }
 
 #[test]
@@ -360,5 +366,36 @@ fn lengths_from_a_hundredth_of_a_nanometre_to_a_hundred_micrometres() {
     }
     for bad in ["0.009 nm", "0 nm", "100.1 um"] {
         assert!(errors(&seal(bad)).contains("from 0.01 nm to 100 um"), "{bad}");
+    }
+}
+
+/// Texts that would cost hours if anything were quadratic in them with a large factor; the
+/// test is that it ends.
+#[test]
+fn large_flows_end() {
+    let steps: String = (1..9_000)
+        .map(|op| format!("{op} seal 9 nm SiNC by silane-pecvd after {}\n", op + 1))
+        .collect();
+    let splits: String = (0..100).map(|at| format!("s{at}x {} skip\n", at + 1)).collect();
+    let many_steps = text(LINES, &steps, &format!("splits\n{splits}"));
+    let many_nets: String =
+        (0..9_000).map(|at| format!("n{at} length 1 um driver 1 ohm load 1 fF\n")).collect();
+    let many_limits = "sealed at 31, 33, 35 nm\n".repeat(9_000);
+    let many_rows: String =
+        (0..9_000).map(|at| format!("row r{at} width 9 nm space 9, 9 nm\n")).collect();
+    for text in [
+        many_steps,
+        text(LINES, STEPS, &format!("nets\n{many_nets}")),
+        text(LINES, STEPS, &format!("limits\n{many_limits}")),
+        text(&format!("{LINES}\n{many_rows}"), STEPS, ""),
+        text(&format!("{LINES}{}", ", 32".repeat(200_000)), STEPS, ""),
+        text(LINES, &format!("{STEPS} {}", "with sticking 1, ".repeat(60_000)), ""),
+        "wafer\n".repeat(9_999),
+        "\n".repeat(1_000_000),
+        "# a comment\n\n".repeat(80_000),
+        "\"".repeat(1_000_000),
+    ] {
+        assert!(errors(&text).len() < 1 << 26);
+        assert!(tidy(&text).len() <= 2 * text.len());
     }
 }

@@ -16,6 +16,8 @@ pub(super) struct Context<'a> {
     pub library: &'a Library,
     messages: Vec<Diagnostic>,
     said: BTreeSet<(Option<Span>, String)>,
+    /// Names that are known to be unknown, so that each is searched for once.
+    unknown: BTreeSet<Span>,
     split: Option<(String, Vec<Span>)>,
     processes: BTreeMap<String, Arc<Process>>,
 }
@@ -27,6 +29,7 @@ impl<'a> Context<'a> {
             library,
             messages: vec![],
             said: BTreeSet::new(),
+            unknown: BTreeSet::new(),
             split: None,
             processes: BTreeMap::new(),
         }
@@ -69,7 +72,7 @@ impl<'a> Context<'a> {
     /// The material of a name.
     pub fn material(&mut self, name: &Name) -> Option<MaterialId> {
         let found = self.library.material_id(&name.value);
-        if found.is_none() {
+        if found.is_none() && self.unknown.insert(name.span) {
             let known = self.library.materials.iter().map(|material| material.name.as_str());
             let message =
                 Diagnostic::error(name.span, format!("no material is called `{}`", name.value));
@@ -108,7 +111,9 @@ impl<'a> Context<'a> {
             return default.map(|process| self.shared(process));
         };
         let Some(process) = library.process(&by.value) else {
-            self.unknown_process(by, verb, word, material);
+            if self.unknown.insert(by.span) {
+                self.unknown_process(by, verb, word, material);
+            }
             return None;
         };
         if !process.serves(verb) {
@@ -146,10 +151,12 @@ impl<'a> Context<'a> {
     }
 
     fn shared(&mut self, process: &Process) -> Arc<Process> {
-        self.processes
-            .entry(process.name.clone())
-            .or_insert_with(|| Arc::new(process.clone()))
-            .clone()
+        if let Some(shared) = self.processes.get(&process.name) {
+            return shared.clone();
+        }
+        let shared = Arc::new(process.clone());
+        self.processes.insert(process.name.clone(), shared.clone());
+        shared
     }
 
     fn unknown_process(&mut self, by: &Name, verb: Verb, word: &Name, material: Option<&Material>) {

@@ -1,6 +1,8 @@
 //! The statements of a tree by section, with what can be said about them before any name is
 //! looked up.
 
+use std::collections::{BTreeMap, BTreeSet};
+
 use super::context::Context;
 use crate::diag::Diagnostic;
 use crate::source::Span;
@@ -9,6 +11,9 @@ use crate::syntax::{
     SplitStatement, Statement, StepStatement, Tree, WaferStatement, WaiverStatement,
 };
 
+/// Longest list of operation numbers in a message.
+const SHOWN_STEPS: usize = 20;
+
 /// The statements of a flow, sorted.
 pub(super) struct Draft<'t> {
     pub name: Option<Name>,
@@ -16,6 +21,8 @@ pub(super) struct Draft<'t> {
     /// The statement with its place.
     pub wafer: Vec<(&'t WaferStatement, Span)>,
     pub steps: Vec<&'t StepStatement>,
+    /// Where the step of a number stands in `steps`, the first where it stands twice.
+    places: BTreeMap<u32, usize>,
     pub splits: Vec<Split<'t>>,
     pub nets: Vec<(&'t NetStatement, Span)>,
     pub next_level: Option<(&'t Film, Span)>,
@@ -89,6 +96,7 @@ impl<'t> Draft<'t> {
             title: None,
             wafer: vec![],
             steps: vec![],
+            places: BTreeMap::new(),
             splits: vec![],
             nets: vec![],
             next_level: None,
@@ -145,49 +153,43 @@ impl<'t> Draft<'t> {
         self.splits.push(Split { name: statement.name.clone(), changes: vec![statement] });
     }
 
-    fn check_ops(&self, context: &mut Context) {
-        let mut seen = std::collections::BTreeMap::new();
-        for step in &self.steps {
-            if let Some(first) = seen.insert(step.op.number, step.op.span) {
-                let line = context.source.position(first.start).line;
-                context.say(
-                    Diagnostic::error(
-                        step.op.span,
-                        format!("the operation number {} stands twice", step.op.text),
-                    )
-                    .label(format!("also in line {line}")),
-                );
-                seen.insert(step.op.number, first);
+    fn check_ops(&mut self, context: &mut Context) {
+        for (at, step) in self.steps.iter().enumerate() {
+            let first = *self.places.entry(step.op.number).or_insert(at);
+            if first == at {
+                continue;
             }
+            let first = &self.steps[first].op;
+            context.say(
+                Diagnostic::error(
+                    step.op.span,
+                    format!("the operation number {} stands twice", step.op.text),
+                )
+                .label(format!("also in line {}", context.source.position(first.span.start).line)),
+            );
         }
     }
 
     fn check_names(&self, context: &mut Context) {
-        let mut seen: Vec<&str> = vec![];
+        let mut seen = BTreeSet::new();
         for (net, _) in &self.nets {
             context.check_new_name(&net.name, "a net");
-            if seen.contains(&net.name.value.as_str()) {
+            if !seen.insert(&net.name.value) {
                 context.say(
                     Diagnostic::error(net.name.span, format!("a second net `{}`", net.name.value))
                         .label("choose another name"),
                 );
             }
-            seen.push(&net.name.value);
         }
-    }
-
-    /// The step of a number.
-    pub fn step(&self, op: u32) -> Option<&'t StepStatement> {
-        self.steps.iter().find(|step| step.op.number == op).copied()
     }
 
     /// Whether there is such an operation; a message if not.
     pub fn check_op(&self, op: &Op, context: &mut Context) -> bool {
-        let known = self.step(op.number).is_some();
+        let known = self.places.contains_key(&op.number);
         if !known && !self.unread.may_be_op(op.number) {
-            let numbers: Vec<&str> = self.steps.iter().map(|step| step.op.text.as_str()).collect();
             let message = Diagnostic::error(op.span, format!("no step has the number {}", op.text));
-            context.say(if numbers.len() <= 20 {
+            context.say(if self.steps.len() <= SHOWN_STEPS {
+                let numbers: Vec<_> = self.steps.iter().map(|step| &*step.op.text).collect();
                 message.label(format!("the steps are {}", numbers.join(", ")))
             } else {
                 message.label("not a step of this flow")

@@ -1,15 +1,20 @@
 //! Which spaces an `at` names, in every variant.
 
+use std::collections::BTreeSet;
+
 use super::context::Context;
 use super::draft::Draft;
 use crate::diag::Diagnostic;
 use crate::flow::{Site, Wafer};
-use crate::syntax::{self, MAX_SITES};
+use crate::syntax;
 use crate::units::Length;
 
 /// Lengths that differ by less name the same space, in nm: far below the smallest drawn
 /// length, far above the rounding of a sum.
 const SAME_NM: f64 = 1e-6;
+
+/// Longest list of sites in a message.
+const SHOWN_SITES: usize = 12;
 
 /// Whether two lengths name the same space.
 pub(super) fn same_length(a: Length, b: Length) -> bool {
@@ -19,11 +24,14 @@ pub(super) fn same_length(a: Length, b: Length) -> bool {
 /// The sites of all variants.
 pub(super) struct Places {
     variants: Vec<Vec<Known>>,
+    /// Those of all variants, each label once, the unsplit flow's first.
+    all: Vec<Known>,
     /// Whether a wafer is not known, so that nothing can be missed.
     unsure: bool,
 }
 
 /// A site with the lengths or the row by which an `at` finds it.
+#[derive(Clone)]
 struct Known {
     site: Site,
     lengths: Option<(Length, Length)>,
@@ -32,25 +40,14 @@ struct Known {
 
 impl Places {
     /// Collects the sites of all variants.
-    pub fn of(wafers: &[Option<Wafer>], draft: &Draft, context: &mut Context) -> Self {
-        let mut variants = vec![];
-        for (variant, wafer) in wafers.iter().enumerate() {
-            let known = wafer.as_ref().map(known).unwrap_or_default();
-            if let Some(wafer) = wafer
-                && known.len() > MAX_SITES
-            {
-                context.enter(variant.checked_sub(1).map(|at| &draft.splits[at]));
-                let message = format!("the wafer has {} spaces", known.len());
-                context.say(
-                    Diagnostic::error(wafer.lines.span, message)
-                        .label(format!("a flow may have {MAX_SITES} sites, rows included")),
-                );
-                context.enter(None);
-            }
-            variants.push(known);
-        }
+    pub fn of(wafers: &[Option<Wafer>], draft: &Draft) -> Self {
+        let variants: Vec<Vec<Known>> =
+            wafers.iter().map(|wafer| wafer.as_ref().map(known).unwrap_or_default()).collect();
+        let mut labels = BTreeSet::new();
+        let all = variants.iter().flatten();
+        let all = all.filter(|known| labels.insert(known.site.label())).cloned().collect();
         let unsure = draft.unread.wafer || wafers.iter().any(Option::is_none);
-        Self { variants, unsure }
+        Self { variants, all, unsure }
     }
 
     /// The sites of an `at` in one variant; those that it lacks are left out.
@@ -64,14 +61,17 @@ impl Places {
         sites
     }
 
-    /// The sites of an `at`, each from the first variant that has it; one that none has is told.
+    /// The sites of an `at`, each from the first variant that has it; the first that none has
+    /// is told.
     pub fn anywhere(&self, at: &[syntax::Site], context: &mut Context) -> Vec<Site> {
         let mut sites: Vec<Site> = vec![];
         for site in at {
-            match self.variants.iter().find_map(|known| find(known, site)) {
-                Some(found) if sites.iter().any(|site| site.label() == found.label()) => {}
-                Some(found) => sites.push(found.clone()),
-                None => self.missing(site, context),
+            let Some(found) = find(&self.all, site) else {
+                self.missing(site, context);
+                break;
+            };
+            if !sites.iter().any(|site| site.label() == found.label()) {
+                sites.push(found.clone());
             }
         }
         sites
@@ -95,12 +95,7 @@ impl Places {
             return;
         }
         let span = site.span();
-        let mut labels: Vec<&str> = vec![];
-        for known in self.variants.iter().flatten() {
-            if !labels.contains(&known.site.label()) {
-                labels.push(known.site.label());
-            }
-        }
+        let labels: Vec<&str> = self.all.iter().map(|known| known.site.label()).collect();
         let message = match site {
             syntax::Site::Row { row, .. } => {
                 let of_row = labels.iter().filter(|label| {
@@ -115,9 +110,10 @@ impl Places {
                 format!("the wafer has no space {}", context.text(span).trim_end_matches(','))
             }
         };
-        context.say(
-            Diagnostic::error(span, message).label(format!("its sites are {}", labels.join(", "))),
-        );
+        context.say(Diagnostic::error(span, message).label(match labels.get(..SHOWN_SITES) {
+            None => format!("its sites are {}", labels.join(", ")),
+            Some(first) => format!("its sites are {} and more", first.join(", ")),
+        }));
     }
 }
 

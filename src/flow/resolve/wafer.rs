@@ -5,7 +5,7 @@ use super::draft::{Draft, Split};
 use crate::diag::Diagnostic;
 use crate::flow::{Below, Between, Film, Height, Layer, Lines, Place, Row, SpacePair, Wafer};
 use crate::source::Span;
-use crate::syntax::{self, MIN_LENGTH_NM, Spaces, WaferStatement};
+use crate::syntax::{self, MAX_SITES, MIN_LENGTH_NM, Spaces, WaferStatement};
 use crate::units::Amount;
 
 /// Statements of one wafer, each with its place.
@@ -354,6 +354,13 @@ impl<'t> Build<'t> {
                 );
             }
             return None;
+        }
+        let sites =
+            lines.spaces.len() + self.rows.iter().map(|row| row.spaces.len()).sum::<usize>();
+        if sites > MAX_SITES {
+            let message = Diagnostic::error(lines.span, format!("the wafer has {sites} spaces"));
+            let label = format!("a flow may have {MAX_SITES} sites, rows included");
+            self.wrong(message.label(label), context);
         }
         self.check_shape(&lines, written, context);
         let between = match self.between.take() {
