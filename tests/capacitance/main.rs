@@ -3,6 +3,8 @@
 mod accuracy;
 mod closed_forms;
 mod command;
+mod gates;
 mod geojson;
+mod reference;
 mod sections;
 mod shapes;
