@@ -116,7 +116,8 @@ fn remove_turned(
     walls: [f64; 2],
     thickness: f64,
 ) {
-    let walls = [links[0].piece.facet.from.x, links[links.len() - 1].piece.facet.to.x];
+    // Both ends of a chain may lie on the same wall.
+    let ends = [links[0].piece.facet.from.x, links[links.len() - 1].piece.facet.to.x];
     let mut k = 0;
     while k < links.len() && links.len() > 1 {
         let to = if k + 1 < links.len() { links[k + 1].from } else { *end };
@@ -139,10 +140,10 @@ fn remove_turned(
         if !closed && (k == 0 || last) {
             // At a wall the neighbour is extended to it.
             if k == 0 {
-                links[0].from = meets_wall(&links[0].piece, walls[0], middle, thickness);
+                links[0].from = meets_wall(&links[0].piece, ends[0], middle, thickness);
             } else {
                 let neighbour = links[k - 1].piece;
-                *end = meets_wall(&neighbour, walls[1], middle, thickness);
+                *end = meets_wall(&neighbour, ends[1], middle, thickness);
                 *end_seam = end_seam.or(gone.piece.seam);
             }
         } else {
