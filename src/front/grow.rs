@@ -118,9 +118,7 @@ impl<'a> Run<'a> {
                 return Err(FrontError::Inconsistent("too many steps"));
             }
             self.mesh.open_corners(&mut self.surface, &self.rates);
-            if !self.transport.is_conformal() {
-                self.mesh.refine(&mut self.surface, &self.narrow);
-            }
+            self.mesh.refine(&mut self.surface, &self.narrow);
             if self.surface.len() > MOST_FACETS {
                 let facets = self.surface.len();
                 return Err(FrontError::TooFine { facets, limit: MOST_FACETS });
@@ -257,8 +255,14 @@ impl<'a> Run<'a> {
         let between = self.start.ambient(sky)?.difference(&self.surface.ambient(sky)?);
         let voids = Region::union_all(self.closures.iter().map(|closure| &closure.void));
         let film = between.difference(&voids);
-        let throats =
-            self.narrow.iter().map(|n| Throat { middle: n.middle, width_nm: n.width }).collect();
+        // A throat between two chains is seen from both.
+        let mut throats: Vec<Throat> = Vec::new();
+        for place in &self.narrow {
+            let same = |t: &Throat| t.middle.distance(place.middle) < 0.5 * place.width;
+            if !throats.iter().any(same) {
+                throats.push(Throat { middle: place.middle, width_nm: place.width });
+            }
+        }
         Ok(Growth { film, closures: self.closures, throats })
     }
 }

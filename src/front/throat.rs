@@ -110,9 +110,6 @@ pub(super) fn narrow_places(surface: &Surface) -> Vec<Narrow> {
         if own.touches / count == 1 && same_chain && inward_step < 0 {
             continue;
         }
-        if own.touches / count == 1 && !same_chain && other < i {
-            continue;
-        }
         let walk = |step: isize, until: Option<usize>, tie_is_narrower: bool| {
             let mut u = (count + i) as isize;
             loop {

@@ -61,6 +61,8 @@ fn vertical_walls_close_at_half_the_space() {
         let [closure] = &growth.closures[..] else { panic!("{:?}", growth.closures) };
         assert!((closure.thickness_nm - 15.995).abs() < 1e-3, "{closure:?}");
         assert!(closure.void.is_empty() && growth.throats.is_empty(), "{growth:?}");
+        let exact = buffer(&array.half(), 20.0);
+        assert!(apart(&growth.film, &exact) < 0.5, "{}", apart(&growth.film, &exact));
     }
 }
 
@@ -84,7 +86,7 @@ fn a_reentrant_trench_keeps_its_void() {
     let growth = grow(&array.half(), &CONFORMAL, 30.0, &fine(1.0)).unwrap();
     let [closure] = &growth.closures[..] else { panic!("{:?}", growth.closures) };
     assert!((closure.thickness_nm - 19.995).abs() < 2e-3, "{}", closure.thickness_nm);
-    assert!((closure.throat.z - 100.0).abs() < 0.05, "{:?}", closure.throat);
+    assert!((closure.throat.z - 100.0).abs() < 0.2, "{:?}", closure.throat);
     let void = closure.void.area() * 2.0;
     assert!((void - 624.17).abs() < 0.003 * 624.17, "{void}");
     let bounds = closure.void.bounds().unwrap();
@@ -150,6 +152,8 @@ fn a_tapered_space_fills_from_the_bottom() {
     let array = Array { s: 32.0, w: 32.0, h: 64.0, taper_deg: 8.0 };
     let growth = grow(&array.half(), &CONFORMAL, 30.0, &resolution(0.8)).unwrap();
     assert!(growth.closures.is_empty(), "{:?}", growth.closures);
+    let exact = buffer(&array.half(), 30.0);
+    assert!(apart(&growth.film, &exact) < 1e-3 * exact.area());
 }
 
 /// A whole cell is two half cells, a row of equal spaces as many.
