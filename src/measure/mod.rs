@@ -6,6 +6,7 @@
 
 mod closing_space;
 mod crack;
+mod delay;
 mod drying;
 mod electrical;
 mod error;
@@ -34,6 +35,7 @@ mod void;
 
 pub use closing_space::{Fineness, Grow};
 pub use crack::critical_thickness_nm;
+pub use delay::{Driven, delay_ps};
 pub use drying::{FreeLine, drying_deflection_nm};
 pub use electrical::{Electrical, Reference};
 pub use geometry::{Geometry, Traced, for_all, site_states};

@@ -5,6 +5,7 @@
 //! twice the coupling. The delay rises with both, so bounds go through as they are.
 
 use super::Figure;
+use super::delay::{Driven, delay_ps};
 use super::reading::{Missing, Reading};
 use crate::flow::Net;
 
@@ -83,35 +84,20 @@ fn plus(a: Figure, b: Figure) -> Figure {
 
 /// Delay of the net's driver, line and load, in ps, by bounds.
 fn delay(net: &Net, resistance: Figure, capacitance: Figure) -> Figure {
-    let length_um = net.length.nominal.um();
-    let driver_ohm = net.driver.nominal.ohm();
-    let load_af = net.load.nominal.af();
-    let of = |r_ohm_per_um: f64, c_af_per_um: f64| {
-        delay_ps(length_um, r_ohm_per_um, c_af_per_um, driver_ohm, load_af)
+    let of = |resistance_ohm_per_um: f64, capacitance_af_per_um: f64| {
+        delay_ps(&Driven {
+            length_um: net.length.nominal.um(),
+            resistance_ohm_per_um,
+            capacitance_af_per_um,
+            driver_ohm: net.driver.nominal.ohm(),
+            load_af: net.load.nominal.af(),
+        })
     };
     Figure {
         value: of(resistance.value, capacitance.value),
         low: of(resistance.low, capacitance.low),
         high: of(resistance.high, capacitance.high),
     }
-}
-
-/// ps in one ohm·aF.
-const PS_PER_OHM_AF: f64 = 1e-6;
-
-/// Half-swing delay of a driver, a distributed line and a load, in ps:
-/// 0.69 R_d (C l + C_L) + 0.38 R C l² + 0.69 R l C_L. 0.38 is that of the open distributed
-/// line, 0.69 = ln 2 that of a lumped resistance and capacitance (Elmore, J. Appl. Phys. 19, 55
-/// (1948), for the sum of the parts).
-fn delay_ps(
-    length_um: f64,
-    r_ohm_per_um: f64,
-    c_af_per_um: f64,
-    driver_ohm: f64,
-    load_af: f64,
-) -> f64 {
-    let (r, c) = (r_ohm_per_um * length_um, c_af_per_um * length_um);
-    (0.69 * driver_ohm * (c + load_af) + 0.38 * r * c + 0.69 * r * load_af) * PS_PER_OHM_AF
 }
 
 #[cfg(test)]
