@@ -5,6 +5,8 @@ use gapwright::library::{self, Exponent, Library, Ranged};
 use gapwright::source::Source;
 use std::fmt::Write;
 
+use assert_cmd::Command;
+
 /// One line a message: place, marked text, message, label, help.
 fn told(messages: &[Diagnostic], source: &Source) -> String {
     let mut out = String::new();
@@ -437,4 +439,49 @@ fn the_page_names_every_key_and_its_file_can_be_used() {
     }
     let example = PAGE.split("```yaml\n").nth(1).unwrap().split("```").next().unwrap();
     assert_eq!(load(example).1, "");
+}
+
+/// Runs `gapwright library …` and hands back exit status, standard output, standard error.
+fn command(arguments: &[&str], input: &str) -> (i32, String, String) {
+    let mut command = Command::cargo_bin("gapwright").unwrap();
+    let run = command.arg("library").args(arguments).write_stdin(input).output().unwrap();
+    let text = |bytes| String::from_utf8(bytes).unwrap();
+    (run.status.code().unwrap(), text(run.stdout), text(run.stderr))
+}
+
+#[test]
+fn the_command_checks_a_file() {
+    let (status, out, told) = command(&["check", "-"], "materials: {Oxid: {kind: dielectrc}}");
+    assert_eq!((status, out.as_str()), (2, "standard input: cannot be used\n"));
+    assert!(told.contains("standard input:1:26") && told.contains("did you mean `dielectric`?"));
+
+    let good = "materials: {Oxid: {kind: dielectric, permittivity: 4, source: ours}}";
+    let told = (0, "standard input: can be used\n".to_owned(), String::new());
+    assert_eq!(command(&["check", "-"], good), told);
+
+    let (status, _, told) = command(&["check", "-"], "rules: {roof-to-thin: {}}");
+    assert_eq!(status, 2);
+    assert!(told.contains("did you mean `roof-too-thin`?"), "{told}");
+}
+
+#[test]
+fn the_command_shows_entries_and_keeps_messages_out_of_them() {
+    let ours = "materials: {Cu: {kind: conductor, resistivity_uohm_cm: 2, source: ours}}";
+    let arguments = ["--use", "-", "Cu", "--format", "json"];
+    let (status, out, told) = command(&arguments, ours);
+    assert_eq!(status, 0);
+    let json: serde_json::Value = serde_json::from_str(&out).unwrap();
+    assert_eq!(json["materials"]["Cu"]["resistivity_uohm_cm"]["value"], 2.0);
+    assert!(told.contains("replaces the one of that name"), "{told}");
+
+    let (status, out, told) = command(&["silan-pecvd"], "");
+    assert_eq!((status, out.as_str()), (2, ""));
+    assert!(told.contains("did you mean `silane-pecvd`?"), "{told}");
+
+    let (status, out, _) = command(&[], "");
+    let library = Library::built_in();
+    assert_eq!(status, 0);
+    for name in library.materials.iter().map(|m| &m.name) {
+        assert!(out.lines().any(|line| line.starts_with(&format!("{name} "))), "{name}");
+    }
 }

@@ -2,10 +2,8 @@
 //!
 //! λ = k T / (√2 π d² p), hard spheres of one kind (kinetic theory).
 
+use crate::num::constants::BOLTZMANN_J_PER_K;
 use crate::units::{Pressure, Temperature};
-
-/// Boltzmann's constant, J/K (exact, SI).
-const BOLTZMANN_J_PER_K: f64 = 1.380_649e-23;
 
 /// Mean free path in nm of molecules `diameter_nm` across.
 pub fn mean_free_path_nm(temperature: Temperature, pressure: Pressure, diameter_nm: f64) -> f64 {

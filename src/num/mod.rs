@@ -1,3 +1,4 @@
-//! Kernels on plain `f64`, and every numerical tolerance of the program in one place.
+//! Kernels on plain `f64`, constants of nature, and every numerical tolerance of the program in one place.
 
+pub mod constants;
 pub mod tolerance;

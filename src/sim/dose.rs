@@ -8,12 +8,8 @@
 
 use super::error::Fault;
 use crate::library::Process;
-
-/// Boltzmann's constant, J/K (exact, SI).
-const BOLTZMANN_J_PER_K: f64 = 1.380_649e-23;
-/// Unified atomic mass unit, kg (CODATA 2018).
-const MASS_UNIT_KG: f64 = 1.660_539_066_60e-27;
-const ZERO_CELSIUS_K: f64 = 273.15;
+use crate::num::constants::{BOLTZMANN_J_PER_K, MASS_UNIT_KG};
+use crate::units::Temperature;
 
 /// Greatest depth over twice the width that the dose covers; `None` where it is not limited.
 pub(super) fn aspect(process: &Process) -> Result<Option<f64>, Fault> {
@@ -26,7 +22,7 @@ pub(super) fn aspect(process: &Process) -> Result<Option<f64>, Fault> {
             "give it `saturation_per_m2`, `molecule_mass_u` and `temperature_c`, or no `dose_pa_s`",
         ));
     };
-    let kelvin = temperature.value + ZERO_CELSIUS_K;
+    let kelvin = Temperature::from_celsius(temperature.value).kelvin();
     let momentum = 2.0 * std::f64::consts::PI * mass.value * MASS_UNIT_KG;
     let flat = saturation.value * (momentum * BOLTZMANN_J_PER_K * kelvin).sqrt();
     let bracket = dose.value / flat;
