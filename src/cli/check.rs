@@ -79,7 +79,11 @@ pub(crate) fn run(args: &Args, shared: &Shared) -> Result<Exit, Failure> {
         drop(progress);
         runs.push(judged.map_err(|error| input::failure(error, &loaded.flow, shared))?.report);
     }
-    let exit = runs.iter().map(|run| exit(run, args.deny)).max().unwrap_or(Exit::Holds);
+    let exit = runs
+        .iter()
+        .map(|run| exit(run, args.deny == Some(Deny::Warnings)))
+        .max()
+        .unwrap_or(Exit::Holds);
     let report = Report::of(runs);
     let result = match args.format {
         Format::Text => {
@@ -91,10 +95,11 @@ pub(crate) fn run(args: &Args, shared: &Shared) -> Result<Exit, Failure> {
     Ok(exit)
 }
 
-fn exit(run: &FlowReport, deny: Option<Deny>) -> Exit {
+/// Exit status of a judged flow.
+pub(super) fn exit(run: &FlowReport, deny_warnings: bool) -> Exit {
     let warned = run.findings.iter().any(|f| f.severity == Severity::Warning && !f.waived);
     match run.verdict {
-        Verdict::Pass if deny == Some(Deny::Warnings) && warned => Exit::Broken,
+        Verdict::Pass if deny_warnings && warned => Exit::Broken,
         Verdict::Pass => Exit::Holds,
         Verdict::Fail | Verdict::Undecided => Exit::Broken,
     }

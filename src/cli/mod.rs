@@ -2,6 +2,7 @@
 
 mod check;
 mod disk;
+mod draw;
 mod exit;
 mod explain;
 mod field;
@@ -10,6 +11,7 @@ mod library;
 mod order;
 mod output;
 mod progress;
+mod report;
 mod tidy;
 
 use std::ffi::OsString;
@@ -47,10 +49,12 @@ pub(crate) struct Shared {
 #[derive(Debug, Subcommand)]
 enum Command {
     Check(check::Args),
+    Draw(draw::Args),
     Explain(explain::Args),
     Field(field::Args),
     Library(library::Args),
     Order(order::Args),
+    Report(report::Args),
     Tidy(tidy::Args),
 }
 
@@ -86,10 +90,12 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
     }
     let ended = match &cli.command {
         Command::Check(args) => check::run(args, &cli.shared),
+        Command::Draw(args) => draw::run(args, &cli.shared),
         Command::Explain(args) => explain::run(args, &cli.shared),
         Command::Field(args) => field::run(args, &cli.shared),
         Command::Library(args) => library::run(args, &cli.shared),
         Command::Order(args) => order::run(args, &cli.shared),
+        Command::Report(args) => report::run(args, &cli.shared),
         Command::Tidy(args) => tidy::run(args, &cli.shared),
     };
     ended.unwrap_or_else(|failure| output::fail(failure.exit, &failure.message))

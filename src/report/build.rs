@@ -2,7 +2,7 @@
 
 use super::{FindingReport, FlowReport, Report, SCHEMA_VERSION};
 use crate::flow::Flow;
-use crate::rules::Finding;
+use crate::rules::{self, Caution, Finding};
 use crate::verdict::Verdict;
 
 impl Report {
@@ -27,8 +27,13 @@ impl FlowReport {
             sites: Vec::new(),
             nets: Vec::new(),
             limits: Vec::new(),
+            cautions: rules::cautions(flow, &flow.variants[0]).iter().map(words).collect(),
         }
     }
+}
+
+fn words(caution: &Caution) -> String {
+    format!("{}: {}", caution.steps.join(", "), caution.text)
 }
 
 impl FindingReport {

@@ -43,6 +43,8 @@ pub struct FlowReport {
     pub nets: Vec<NetReport>,
     /// Limits, in the order of the text, one entry a site judged.
     pub limits: Vec<LimitReport>,
+    /// Cautions for hazardous steps, once a flow.
+    pub cautions: Vec<String>,
 }
 
 /// One finding, with its place in the text.

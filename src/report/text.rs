@@ -21,7 +21,16 @@ fn flow(run: &FlowReport, paint: Paint) -> String {
     text.push_str(&nets(&run.nets, paint));
     text.push_str(&limits(&run.limits, paint));
     text.push_str(&findings(run, paint));
+    text.push_str(&cautions(run, paint));
     text
+}
+
+fn cautions(run: &FlowReport, paint: Paint) -> String {
+    if run.cautions.is_empty() {
+        return String::new();
+    }
+    let lines: String = run.cautions.iter().map(|caution| format!("    {caution}\n")).collect();
+    format!("\n  {}\n{}", paint.heading("cautions"), paint.faint(&lines))
 }
 
 fn headline(run: &FlowReport, paint: Paint) -> String {

@@ -7,6 +7,8 @@ mod order;
 mod tables;
 mod viewer;
 
+use std::collections::BTreeMap;
+
 use maud::{DOCTYPE, Markup, PreEscaped, html};
 
 use super::FlowReport;
@@ -26,17 +28,8 @@ pub struct Grown<'a> {
     pub cells: &'a [CellTrace],
 }
 
-/// Words that go with a flow: what it makes a reader careful about, where its numbers come from.
-#[derive(Debug, Clone, Default)]
-pub struct Reading {
-    /// Cautions for hazardous steps.
-    pub cautions: Vec<String>,
-    /// Material or process, and the source of its numbers.
-    pub sources: Vec<(String, String)>,
-}
-
 /// The whole page.
-pub fn page(flow: &Flow, report: &FlowReport, grown: &[Grown], reading: &Reading) -> String {
+pub fn page(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> String {
     let markup = html! {
         (DOCTYPE)
         html lang="en" {
@@ -55,7 +48,8 @@ pub fn page(flow: &Flow, report: &FlowReport, grown: &[Grown], reading: &Reading
                     (tables::nets(report))
                     (tables::findings(flow, report))
                     (order::section(flow))
-                    (footing(reading))
+                    (cautions(report))
+                    (sources(flow, grown))
                 }
                 script { (PreEscaped(SCRIPT)) }
             }
@@ -86,21 +80,41 @@ fn heading(report: &FlowReport) -> Markup {
     }
 }
 
-fn footing(reading: &Reading) -> Markup {
+fn cautions(report: &FlowReport) -> Markup {
     html! {
         section aria-labelledby="cautions" {
             h2 #cautions { "Cautions" }
             ul {
-                li { "A planning aid: not a recipe, not a qualification. Figures are estimates for drafting and review; the site's own qualification decides." }
-                @for caution in &reading.cautions { li { (caution) } }
+                li {
+                    "A planning aid: not a recipe, not a qualification. Figures are estimates for "
+                    "drafting and review; the site's own qualification decides."
+                }
+                @for caution in &report.cautions { li { (caution) } }
             }
         }
+    }
+}
+
+/// Where the numbers of the materials and processes of the flow come from.
+fn sources(flow: &Flow, grown: &[Grown]) -> Markup {
+    let mut rows = BTreeMap::new();
+    for cell in grown.iter().flat_map(|grown| grown.cells) {
+        for body in cell.stages.iter().flat_map(|stage| &stage.section.bodies) {
+            let material = flow.library.material(body.material);
+            rows.insert(&material.name, &material.source);
+        }
+    }
+    for step in grown.iter().flat_map(|grown| &flow.variants[grown.variant].steps) {
+        let process = &step.action.process().process;
+        rows.insert(&process.name, &process.source);
+    }
+    html! {
         section aria-labelledby="sources" {
             h2 #sources { "Sources" }
             details {
                 summary { "Where the library's numbers come from" }
                 table {
-                    @for (name, source) in &reading.sources {
+                    @for (name, source) in &rows {
                         tr { th scope="row" { (name) } td { (source) } }
                     }
                 }
