@@ -81,14 +81,16 @@ impl Exchange {
     /// Flux of an isotropic gas of flux 1 on an open flat that sticks with probability
     /// `sticking` of each facet and is otherwise re-emitted diffusely. `flux` is the first guess and the result.
     pub fn gas(&self, sticking: &[f64], flux: &mut [f64]) -> Result<(), FrontError> {
+        // What a facet sends back is gathered once a product, not once a pair.
+        let mut sent = vec![0.0; flux.len()];
         let apply = |x: &[f64], y: &mut [f64]| {
+            for (sent, (x, sticking)) in sent.iter_mut().zip(x.iter().zip(sticking)) {
+                *sent = (1.0 - sticking) * x;
+            }
             let mut start = 0;
             for (i, &end) in self.ends.iter().enumerate() {
-                let mut sum = 0.0;
-                for &(j, share) in &self.entries[start..end] {
-                    sum += share * (1.0 - sticking[j as usize]) * x[j as usize];
-                }
-                y[i] = x[i] - sum;
+                let row = &self.entries[start..end];
+                y[i] = x[i] - row.iter().map(|&(j, share)| share * sent[j as usize]).sum::<f64>();
                 start = end;
             }
         };
@@ -110,7 +112,11 @@ fn dot(a: &[f64], b: &[f64]) -> f64 {
 }
 
 /// Solves A x = b by stabilised bi-conjugate gradients from the guess in `x`.
-fn solve(apply: impl Fn(&[f64], &mut [f64]), b: &[f64], x: &mut [f64]) -> Result<(), FrontError> {
+fn solve(
+    mut apply: impl FnMut(&[f64], &mut [f64]),
+    b: &[f64],
+    x: &mut [f64],
+) -> Result<(), FrontError> {
     let n = b.len();
     let scale = dot(b, b).sqrt();
     if scale == 0.0 {

@@ -22,7 +22,7 @@ use crate::geom::{Point, Region};
 use crate::num::tolerance::SKY_MARGIN_NM;
 
 /// Largest share of a throat that one step closes.
-const STEP_OF_THROAT: f64 = 0.08;
+const STEP_OF_THROAT: f64 = 0.12;
 /// Largest step over the facet length.
 const STEP_OF_FACET: f64 = 1.0;
 /// Turn between neighbours of a fan: in proportion to facet over throat, within bounds, radians.

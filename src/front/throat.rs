@@ -71,7 +71,7 @@ const WIDER: f64 = 1e-3;
 /// Parallel sides: the width rises by less than this share over two widths.
 const SLIT_RISE: f64 = 0.1;
 /// The neck of a throat: facets whose discs exceed the least by less than this share.
-const NECK_RISE: f64 = 0.15;
+const NECK_RISE: f64 = 0.4;
 /// A slit is at least this long, over half its width.
 const SLIT_LENGTH: f64 = 4.0;
 /// Cosine between the normals of parallel sides: within twice the slope of [`SLIT_RISE`].

@@ -150,8 +150,8 @@ impl Scenery {
         if height_a <= 0.0 && height_b <= 0.0 {
             return;
         }
-        let from = if height_a <= 0.0 { -1.0 } else { a.dot(eye.left) / a.norm() };
-        let to = if height_b <= 0.0 { 1.0 } else { b.dot(eye.left) / b.norm() };
+        let from = if height_a <= 0.0 { -1.0 } else { a.dot(eye.left) / a.dot(a).sqrt() };
+        let to = if height_b <= 0.0 { 1.0 } else { b.dot(eye.left) / b.dot(b).sqrt() };
         if to - from <= SLIVER {
             return;
         }
