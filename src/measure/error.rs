@@ -7,7 +7,9 @@
 //! faster. The value is that of the fine trace, not an extrapolated one: closures make the order
 //! uneven. The error is the difference times the safety factor of Roache (J. Fluids Eng. 116,
 //! 405 (1994); from memory), plus a floor for what both traces share: the width at which a throat
-//! counts as closed is met to within a part of it.
+//! counts as closed is met to within a part of it. The top of a void is where its neck meets the
+//! closure width; a neck is nearly parallel, so an error of the width moves the top by far more:
+//! what it moves on the void's own outline is added to all that hangs on the top.
 //!
 //! It fails where two resolutions agree by chance; the floor, and the third resolution that the
 //! pipeline asks for while the wanted accuracy is missed, guard against that.
@@ -54,13 +56,29 @@ impl GrowthError {
             (Ok(c), Ok(f)) if quantity == Quantity::VoidShare => {
                 Reading::Known(self.area(c, f, fine.perimeter(), fine.drawn_area))
             }
-            (Ok(c), Ok(f)) => Reading::Known(self.length(c, f)),
+            (Ok(c), Ok(f)) => {
+                let figure = self.length(c, f);
+                let tip =
+                    if hangs_on_the_top(quantity) { self.highest_tip(coarse, fine) } else { 0.0 };
+                Reading::Known(Figure { low: figure.low - tip, high: figure.high + tip, ..figure })
+            }
             (Err(Missing::Cut { .. }), Err(missing @ Missing::Cut { .. })) => {
                 Reading::Missing(missing)
             }
             (Err(c), Err(f)) if c == f => Reading::Missing(f),
             _ => Reading::Unclear(Unclear::Topology),
         }
+    }
+
+    /// How far the top of a void may be off by the error of its neck's width, in nm.
+    pub fn tip(&self, coarse: &VoidShape, fine: &VoidShape) -> f64 {
+        let width = self.length(coarse.width, fine.width);
+        fine.tip(self.closure_width_nm, width.high - width.value)
+    }
+
+    fn highest_tip(&self, coarse: &Gap, fine: &Gap) -> f64 {
+        let highest = fine.voids.iter().max_by(|a, b| a.top.total_cmp(&b.top));
+        highest.map_or(0.0, |void| self.tip(&Self::counterpart(coarse, void), void))
     }
 
     /// The states that a space may be in: what either trace shows, and the other side of closure
@@ -95,4 +113,10 @@ impl GrowthError {
         most.filter(|(area, _)| *area > 0.0)
             .map_or_else(|| void.vanished(), |(_, other)| other.clone())
     }
+}
+
+/// Whether a quantity moves with the top of a void.
+fn hangs_on_the_top(quantity: Quantity) -> bool {
+    use Quantity::{PolishMargin, Roof, VoidHeight, VoidTop};
+    matches!(quantity, VoidTop | VoidHeight | Roof | PolishMargin)
 }
