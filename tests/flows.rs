@@ -1,6 +1,12 @@
 //! Every example flow does what its comments say (`flows/README.md` lists the forms).
 
-#![allow(clippy::disallowed_methods, reason = "it reads the examples")]
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "tests read files and time nothing"
+)]
 
 use std::fs;
 use std::path::{Path, PathBuf};

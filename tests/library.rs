@@ -1,5 +1,13 @@
 //! Library files from outside: what is refused and where, what merges, what stays bounded.
 
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "tests read files and time nothing"
+)]
+
 use gapwright::diag::Diagnostic;
 use gapwright::library::{self, Exponent, Library, Ranged};
 use gapwright::source::Source;

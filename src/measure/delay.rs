@@ -39,7 +39,7 @@ mod tests {
         let term = |k: u32| {
             let odd = f64::from(2 * k + 1);
             let rate = (odd * std::f64::consts::FRAC_PI_2).powi(2);
-            let sign = if k % 2 == 0 { 1.0 } else { -1.0 };
+            let sign = if k.is_multiple_of(2) { 1.0 } else { -1.0 };
             sign * 4.0 / (odd * std::f64::consts::PI) * (-rate * t).exp()
         };
         1.0 - (0..200).map(term).sum::<f64>()

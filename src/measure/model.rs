@@ -206,3 +206,30 @@ pub struct NetReport {
     /// Neighbours switching against, ps.
     pub delay_against_ps: Option<Figure>,
 }
+
+impl SiteFigures {
+    /// Top of the highest void above the line top, nm.
+    pub fn highest_top_nm(&self) -> Option<Figure> {
+        self.voids.iter().map(|v| v.top_nm).reduce(|a, b| if b.value > a.value { b } else { a })
+    }
+
+    /// Thinnest roof over a void, nm.
+    pub fn thinnest_roof_nm(&self) -> Option<Figure> {
+        let roofs = self.voids.iter().filter_map(|v| v.roof_nm);
+        roofs.reduce(|a, b| if b.value < a.value { b } else { a })
+    }
+
+    /// Share of the space that its voids take, summed on each side; of a pair, the lesser side.
+    pub fn void_share(&self) -> Option<Figure> {
+        let side = |side: Side| {
+            let shares = self.voids.iter().filter(|v| v.side == side).map(|v| v.share);
+            shares.reduce(|a, b| Figure {
+                value: a.value + b.value,
+                low: a.low + b.low,
+                high: a.high + b.high,
+            })
+        };
+        let sides = [Side::Left, Side::Right, Side::Both].into_iter().filter_map(side);
+        sides.reduce(|a, b| if b.value < a.value { b } else { a })
+    }
+}

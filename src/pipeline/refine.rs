@@ -10,8 +10,13 @@ use crate::flow::{Dimension, Flow, Quantity};
 use crate::measure::{Reading, Traced};
 use crate::sim::{CellTrace, Grain, SimError, Simulator};
 
-/// Times that the facets may be halved beyond the first two resolutions.
-const REFINEMENTS: usize = 2;
+/// Times that the facets may be halved beyond the first two resolutions; each costs some five times
+/// what the one before it did.
+const REFINEMENTS: usize = 1;
+
+/// Positions are wanted to within this many accuracies of the space: the cusp at a void's tip
+/// is the least certain place of a section.
+const POSITION: f64 = 2.0;
 
 /// Error of a film that is always good enough, in nm.
 const FILM_ERROR_NM: f64 = 0.25;
@@ -98,7 +103,7 @@ fn site_accurate(traced: &Traced, accuracy: f64) -> Result<bool, RunError> {
                     _ if FILMS.contains(&quantity) => {
                         (accuracy * figure.value.abs()).max(FILM_ERROR_NM)
                     }
-                    _ => accuracy * space_nm,
+                    _ => POSITION * accuracy * space_nm,
                 };
                 (figure.high - figure.low) / 2.0 <= allowed
             }

@@ -106,24 +106,15 @@ fn header(split: bool, paint: Paint) -> Vec<Cell> {
 
 fn site_row(site: &SiteFigures, split: bool, paint: Paint) -> Vec<Cell> {
     let nm = |value: Option<Figure>| shown(value, Dimension::Length);
-    let highest = |get: fn(&crate::measure::VoidFigures) -> Option<Figure>, least: bool| {
-        let figures = site.voids.iter().filter_map(get);
-        figures.reduce(|a, b| if (a.value < b.value) == least { a } else { b })
-    };
-    let share = site.voids.iter().map(|v| v.share).reduce(|a, b| Figure {
-        value: a.value + b.value,
-        low: a.low + b.low,
-        high: a.high + b.high,
-    });
     let electrical = site.electrical.as_ref();
     let mut row = vec![
         Cell::plain(&site.site),
         state_cell(site.state, paint),
         Cell::plain(site.sealed_by.as_deref().unwrap_or("-")),
-        nm(highest(|v| Some(v.top_nm), false)),
+        nm(site.highest_top_nm()),
         nm(site.polish_margin_nm),
-        shown(share, Dimension::Share),
-        nm(highest(|v| v.roof_nm, true)),
+        shown(site.void_share(), Dimension::Share),
+        nm(site.thinnest_roof_nm()),
         shown(electrical.map(|e| e.coupling_af_per_um), Dimension::CapacitancePerLength),
         shown(electrical.and_then(|e| e.coupling_drop), Dimension::Share),
         shown(electrical.map(|e| e.total_af_per_um), Dimension::CapacitancePerLength),

@@ -4,6 +4,15 @@
 //! has `tests/reference/requirements.txt`, runs `tests/reference/growth_baseline.py` too and
 //! prints the ratio of the times; nothing is asserted.
 
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "a bench reads, measures and prints"
+)]
+
+#[allow(dead_code, reason = "shared with the tests")]
 #[path = "../physics/scenes.rs"]
 mod scenes;
 

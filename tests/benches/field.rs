@@ -6,6 +6,14 @@
 //!
 //! One thread on both sides (`OMP_NUM_THREADS=1`); nothing is asserted.
 
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "a bench reads, measures and prints"
+)]
+
 #[path = "../capacitance/sections.rs"]
 #[allow(dead_code, reason = "shared with the tests")]
 mod sections;

@@ -2,6 +2,15 @@
 //!
 //! Prints milliseconds and the figures that they buy; nothing is asserted.
 
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "a bench reads, measures and prints"
+)]
+
+#[allow(dead_code, reason = "shared with the tests")]
 #[path = "../physics/scenes.rs"]
 mod scenes;
 

@@ -1,6 +1,12 @@
 //! How long the language layer takes over the largest flow that it reads. Prints; judges nothing.
 
-#![allow(clippy::disallowed_methods, clippy::print_stdout, reason = "a bench measures and prints")]
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "a bench reads, measures and prints"
+)]
 
 use std::sync::Arc;
 use std::time::{Duration, Instant};

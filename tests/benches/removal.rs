@@ -2,6 +2,14 @@
 //!
 //! Prints milliseconds, the area removed and the lowest point of the floor; nothing is asserted.
 
+#![allow(
+    clippy::disallowed_methods,
+    clippy::disallowed_types,
+    clippy::print_stdout,
+    clippy::print_stderr,
+    reason = "a bench reads, measures and prints"
+)]
+
 use gapwright::front::{Character, Resolution, Scene, Solid, erode};
 use gapwright::geom::Region;
 use std::time::Instant;

@@ -176,7 +176,7 @@ fn unit_cell(size: f64, bodies: Vec<Body>) -> [f64; 3] {
 #[test]
 fn round_voids_in_a_host() {
     for (share, k) in [(0.1, 3.4642), (0.3, 2.7230), (0.5, 2.1096), (0.7, 1.5711)] {
-        let radius = 100.0 * (share / PI as f64).sqrt();
+        let radius = 100.0 * (share / PI).sqrt();
         let bodies = vec![
             slab([0.0, 100.0], [0.0, 100.0], Role::Dielectric(3.9)),
             body(ellipse([50.0, 50.0], [radius; 2], 720), Role::Dielectric(1.0)),

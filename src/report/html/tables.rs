@@ -37,18 +37,6 @@ pub(super) fn sites(report: &FlowReport) -> Markup {
 fn row(site: &SiteFigures) -> Markup {
     let nm = |value| shown(value, Dimension::Length);
     let per_um = |value| shown(value, Dimension::CapacitancePerLength);
-    let top =
-        site.voids.iter().map(|v| v.top_nm).reduce(|a, b| if b.value > a.value { b } else { a });
-    let roof = site
-        .voids
-        .iter()
-        .filter_map(|v| v.roof_nm)
-        .reduce(|a, b| if b.value < a.value { b } else { a });
-    let share = site.voids.iter().map(|v| v.share).reduce(|a, b| Figure {
-        value: a.value + b.value,
-        low: a.low + b.low,
-        high: a.high + b.high,
-    });
     let electrical = site.electrical.as_ref();
     html! {
         tr {
@@ -56,10 +44,10 @@ fn row(site: &SiteFigures) -> Markup {
             td { (site.split.as_deref().unwrap_or("–")) }
             td { (site.state.map_or("cannot tell", |state| state.name())) }
             td { (site.sealed_by.as_deref().unwrap_or("–")) }
-            td { (nm(top)) }
+            td { (nm(site.highest_top_nm())) }
             td { (nm(site.polish_margin_nm)) }
-            td { (shown(share, Dimension::Share)) }
-            td { (nm(roof)) }
+            td { (shown(site.void_share(), Dimension::Share)) }
+            td { (nm(site.thinnest_roof_nm())) }
             td { (nm(site.side_film_nm)) }
             td { (per_um(electrical.map(|e| e.coupling_af_per_um))) }
             td { (shown(electrical.and_then(|e| e.coupling_drop), Dimension::Share)) }
