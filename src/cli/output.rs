@@ -58,6 +58,10 @@ fn write_whole(bytes: &[u8], path: &Path) -> io::Result<()> {
     let folder = path.parent().filter(|p| !p.as_os_str().is_empty()).unwrap_or(Path::new("."));
     let mut file = tempfile::NamedTempFile::new_in(folder)?;
     file.write_all(bytes)?;
+    // A temporary file is its owner's alone; what replaces a file keeps that file's permissions.
+    if let Ok(before) = path.metadata() {
+        file.as_file().set_permissions(before.permissions())?;
+    }
     file.as_file().sync_all()?;
     file.persist(path).map_err(|error| error.error)?;
     Ok(())
