@@ -21,10 +21,10 @@ pub fn names(library: &Library) -> Vec<&str> {
 
 /// The list of all pages, a line each, by kind.
 pub fn list(library: &Library) -> String {
-    let rules = REGISTRY.iter().map(|rule| (rule.name.to_owned(), rule.summary()));
-    let quantities = Quantity::ALL
-        .iter()
-        .map(|&quantity| (quantity.name().to_owned(), first_paragraph(measure::page(quantity))));
+    let rules = REGISTRY.iter().map(|rule| (rule.name.to_owned(), first_sentence(&rule.summary())));
+    let quantities = Quantity::ALL.iter().map(|&quantity| {
+        (quantity.name().to_owned(), first_sentence(&first_paragraph(measure::page(quantity))))
+    });
     let materials = library.materials.iter().map(|m| (m.name.clone(), m.label.clone()));
     let processes = library.processes.iter().map(|process| {
         let what = format!("{} {}", process.verb_word(), process.materials.join(", "));
@@ -107,6 +107,11 @@ fn word(value: &impl Serialize) -> String {
         Ok(serde_json::Value::String(word)) => word,
         _ => String::new(),
     }
+}
+
+fn first_sentence(paragraph: &str) -> String {
+    let end = paragraph.find(". ").map_or(paragraph.len(), |at| at + 1);
+    paragraph[..end].to_owned()
 }
 
 fn first_paragraph(page: &str) -> String {

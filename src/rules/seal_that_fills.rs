@@ -3,6 +3,7 @@
 use crate::diag::Severity;
 use crate::flow::{Action, Role, State};
 use super::frame::context::site_of;
+use super::frame::shape::{drawn_width, void_share};
 use super::frame::{Context, Findings, Found, Needs, Rule, Threshold};
 
 pub static RULE: Rule = Rule {
@@ -20,16 +21,19 @@ pub static RULE: Rule = Rule {
 fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     let least = findings.threshold("least_share");
     for moment in context.moments() {
-        if !matches!(moment.step.action, Action::Deposit { role: Role::Seal, .. }) {
+        let Action::Deposit { role: Role::Seal, thickness, .. } = moment.step.action else {
             continue;
-        }
+        };
         for space in moment.spaces() {
+            // A wide space fills from its floor; it is not closed from its sides.
+            let sides_meet = drawn_width(&moment.before.section, space) <= 2.0 * thickness.nominal.nm();
             let closed = moment.before.states[space] == State::Open
-                && moment.after.states[space] != State::Open;
+                && moment.after.states[space] != State::Open
+                && sides_meet;
             if !closed || context.solid_by_limit(site_of(moment.cell, space)) {
                 continue;
             }
-            let share = super::frame::shape::void_share(&moment.after.section, space);
+            let share = void_share(&moment.after.section, space);
             if share >= least {
                 continue;
             }

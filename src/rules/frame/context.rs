@@ -6,6 +6,10 @@ use crate::library::{Ambient, Material, MaterialId, Process};
 use crate::measure::SiteFigures;
 use crate::sim::{CellTrace, Exposure, Stage};
 
+/// A bare spot at least this long, in nm, is exposed; less is what finite facets leave at
+/// corners under a closed film, and no section can judge it.
+pub const LEAST_EXPOSED_NM: f64 = 1.0;
+
 /// One judged variant with everything that is known of it.
 #[derive(Clone, Copy)]
 pub struct Context<'a> {
@@ -44,14 +48,17 @@ impl<'a> Moment<'a> {
 
     /// What the step found exposed to its ambient, longest first.
     pub fn exposed(&self) -> &'a [Exposure] {
-        &self.after.exposed_before
+        let exposed = &self.after.exposed_before;
+        let tiny = exposed.iter().position(|exposure| exposure.length_nm < LEAST_EXPOSED_NM);
+        &exposed[..tiny.unwrap_or(exposed.len())]
     }
 
     /// What the step met: what it found exposed, and what it uncovered (the next step finds it).
     pub fn met(&self) -> Vec<Exposure> {
         let mut met = self.exposed().to_vec();
         let next = self.cell.stages[self.index + 2..].iter().find(|stage| stage.acts);
-        for exposure in next.iter().flat_map(|stage| &stage.exposed_before) {
+        let found = next.iter().flat_map(|stage| &stage.exposed_before);
+        for exposure in found.filter(|exposure| exposure.length_nm >= LEAST_EXPOSED_NM) {
             if met.iter().all(|known| known.material != exposure.material) {
                 met.push(exposure.clone());
             }

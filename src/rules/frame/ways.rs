@@ -162,8 +162,9 @@ pub fn breathes(context: &Context<'_>, section: &Section, void: &Region) -> Opti
         section.bodies.iter().filter(|body| lets_pass(context, body)).collect();
     let surface =
         section.bodies.iter().filter_map(|body| top(&body.region)).fold(f64::MIN, f64::max);
-    // The widest body that lets pass is named: a thin liner is rarely what is to blame.
-    let blamed = passable.iter().max_by(|a, b| a.region.area().total_cmp(&b.region.area()))?;
+    // The way ends at the surface: what lets pass there is named.
+    let height = |body: &&&Body| top(&body.region).unwrap_or(f64::MIN);
+    let blamed = passable.iter().max_by(|a, b| height(a).total_cmp(&height(b)))?;
     let [left, right] = section.drawn.walls;
     let floor = void.bounds()?.min.z.min(0.0);
     let window = Region::rectangle([left, right], [floor, surface + 1.0]);
