@@ -416,7 +416,7 @@ proptest! {
     fn planar_steps_keep_the_partition(
         width in 5.0..80.0f64,
         tall in 5.0..150.0f64,
-        spaces in proptest::collection::vec(5.0..120.0f64, 1..4),
+        spaces in proptest::collection::vec(25.0..120.0f64, 1..4),
         taper in -1.5..1.5f64,
         plane in -4.0..40.0f64,
         row in proptest::bool::ANY,
