@@ -9,4 +9,9 @@
     reason = "tests read files and time nothing"
 )]
 
+mod harness;
+mod legitimate;
+mod mistakes;
+mod pages;
 mod registry;
+mod shuffled;
