@@ -2,7 +2,7 @@
 //!
 //! Prints both times and their ratio for a flow with three spaces; nothing is asserted.
 
-#![allow(clippy::disallowed_methods, reason = "a benchmark reads the clock")]
+#![allow(clippy::disallowed_types, clippy::print_stdout, reason = "a bench measures and prints")]
 
 use std::hint::black_box;
 use std::sync::Arc;
