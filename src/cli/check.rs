@@ -28,6 +28,10 @@ pub(crate) struct Args {
     /// Judge the splits too.
     #[arg(long)]
     splits: bool,
+    /// Judge the corners of the tolerances too: what holds at the nominal values and breaks at
+    /// three sigma of their root-sum-square.
+    #[arg(long)]
+    corners: bool,
     /// Accuracy wanted: of positions relative to the space, of films relative or 0.25 nm, of
     /// shares absolute, of capacitance half of it relative.
     #[arg(long, value_name = "A", default_value_t = ACCURACY, value_parser = accuracy)]
@@ -70,7 +74,7 @@ fn accuracy(text: &str) -> Result<f64, String> {
 }
 
 pub(crate) fn run(args: &Args, shared: &Shared) -> Result<Exit, Failure> {
-    let options = Options { accuracy: args.accuracy, splits: args.splits };
+    let options = Options { accuracy: args.accuracy, splits: args.splits, corners: args.corners };
     let mut runs = Vec::new();
     for path in &args.flows {
         let loaded = input::load(&Disk, path, &args.name, shared)?;

@@ -38,6 +38,9 @@ pub(super) struct System {
 pub(super) struct Condensed {
     /// The quadratic form of the minimum in the coefficients of the loads.
     pub energies: Mat<f64>,
+    /// The energy of each load alone: minimising takes from it, so the minimum is as exact as
+    /// the rounding of this.
+    pub unminimised: Vec<f64>,
     /// The minimising w of each load, by unknown.
     pub fields: Mat<f64>,
 }
@@ -103,6 +106,7 @@ impl System {
     ) -> Result<Condensed, FieldError> {
         let (mut energies, mut loads) = self.load(nodes, stiffness, coefficient);
         let loaded = loads.clone();
+        let unminimised = (0..self.columns).map(|k| energies[(k, k)]).collect();
         if self.unknowns > 0 && self.columns > 0 {
             let failed = |e: &dyn std::fmt::Debug| FieldError::internal(format!("factor: {e:?}"));
             let matrix = self.matrix(nodes, stiffness, coefficient);
@@ -125,7 +129,7 @@ impl System {
             }
         }
         let fields = Mat::from_fn(self.unknowns, self.columns, |u, k| -loads[(u, k)]);
-        Ok(Condensed { energies, fields })
+        Ok(Condensed { energies, unminimised, fields })
     }
 
     /// Node values of each triangle for combinations of loads: `fields` and `coefficients`

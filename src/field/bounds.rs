@@ -13,7 +13,7 @@ use super::assembly::Condensed;
 use super::domain::Domain;
 use super::dual::carriers;
 use super::{EPSILON_0_AF_PER_UM, FieldError, Matrix};
-use crate::num::tolerance::FIELD_ROUNDING;
+use crate::num::tolerance::{FIELD_CANCELLATION, FIELD_ROUNDING};
 
 /// Both bounds over ε0, and the fields that attain them.
 pub(super) struct Bounds {
@@ -25,6 +25,8 @@ pub(super) struct Bounds {
     pub potentials: Mat<f64>,
     /// Fluxes of all carriers for the same.
     pub fluxes: Mat<f64>,
+    /// What rounding may have changed of each electrode's diagonal.
+    rounding: Vec<f64>,
 }
 
 impl Bounds {
@@ -48,10 +50,16 @@ impl Bounds {
         }
         let fluxes = solve(&dual.energies, &charges)?;
         let (lower, floated) = float(&(charges.transpose() * &fluxes), electrodes)?;
-        let bounds = Self { upper, lower, potentials, fluxes: &fluxes * &floated };
+        let rounding = (0..electrodes)
+            .map(|i| {
+                FIELD_ROUNDING * upper[(i, i)].abs() + FIELD_CANCELLATION * primal.unminimised[i]
+            })
+            .collect();
+        let fluxes = &fluxes * &floated;
+        let bounds = Self { upper, lower, potentials, fluxes, rounding };
         for i in 0..electrodes {
             let (high, low) = (bounds.upper[(i, i)], bounds.lower[(i, i)]);
-            if !(high.is_finite() && low.is_finite() && low <= high + FIELD_ROUNDING * high.abs()) {
+            if !(high.is_finite() && low.is_finite() && low <= high + bounds.rounding[i]) {
                 return Err(FieldError::internal(format!(
                     "electrode {i}: lower bound {low} above upper bound {high}"
                 )));
@@ -63,18 +71,25 @@ impl Bounds {
     /// Gap of the diagonal entry of an electrode, rounding included.
     pub fn gap(&self, i: usize) -> f64 {
         let (high, low) = (self.upper[(i, i)], self.lower[(i, i)]);
-        (high - low).max(0.0) + FIELD_ROUNDING * high
+        (high - low).max(0.0) + self.rounding[i]
+    }
+
+    /// What rounding may have changed of the diagonal entry of an electrode.
+    pub fn rounding(&self, i: usize) -> f64 {
+        self.rounding[i]
     }
 
     /// Largest half-width over what is wanted of it, relative to the entry: of the diagonal and
-    /// of the couplings that are at least half of their electrode's largest.
+    /// of the couplings that are at least half of their electrode's largest. What is no more than
+    /// its rounding, an electrode that nothing takes a field from, is as accurate as can be.
     pub fn excess(&self, accuracy: f64) -> f64 {
         let n = self.upper.nrows();
         let mut excess = 0.0_f64;
         for i in 0..n {
             let mean = |j: usize| 0.5 * (self.upper[(i, j)] + self.lower[(i, j)]).abs();
             let largest = (0..n).filter(|j| *j != i).map(mean).fold(0.0, f64::max);
-            for j in (0..n).filter(|j| mean(*j) > 0.0 && mean(*j) >= 0.5 * largest) {
+            let told = |j: &usize| mean(*j) > self.rounding[i] && mean(*j) >= 0.5 * largest;
+            for j in (0..n).filter(told) {
                 let half = 0.5 * (self.gap(i) * self.gap(j)).sqrt();
                 excess = excess.max(half / (accuracy * mean(j)));
             }

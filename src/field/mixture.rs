@@ -26,7 +26,7 @@ impl Mixture {
     /// Holds the bounds of the solution against these.
     pub fn check(&self, bounds: &Bounds) -> Result<(), FieldError> {
         for (i, (series, parallel)) in self.series.iter().zip(&self.parallel).enumerate() {
-            let slack = FIELD_ROUNDING * parallel;
+            let slack = FIELD_ROUNDING * parallel + bounds.rounding(i);
             let (low, high) = (bounds.lower[(i, i)], bounds.upper[(i, i)]);
             if high < series - slack || low > parallel + slack {
                 return Err(FieldError::internal(format!(

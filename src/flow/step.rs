@@ -198,6 +198,26 @@ impl Action {
         }
     }
 
+    /// The process of the step, to be changed.
+    pub(super) fn process_mut(&mut self) -> &mut ProcessUse {
+        match self {
+            Self::Deposit { process, .. }
+            | Self::Etch { process, .. }
+            | Self::EtchUntil { process, .. }
+            | Self::Convert { process, .. }
+            | Self::Mask { process, .. }
+            | Self::Fill { process, .. }
+            | Self::Release { process, .. }
+            | Self::Strip { process, .. }
+            | Self::Polish { process, .. }
+            | Self::PolishUntil { process, .. }
+            | Self::Anneal { process, .. }
+            | Self::Cure { process, .. }
+            | Self::Clean { process }
+            | Self::Via { process, .. } => process,
+        }
+    }
+
     /// The verb as written in a flow.
     pub fn verb(&self) -> &'static str {
         match self {

@@ -94,6 +94,21 @@ pub struct SpacePair {
     pub left: Amount<Length>,
     /// Right of the line; the same for a dense array.
     pub right: Amount<Length>,
+    /// Both as drawn, which is what the text calls the site wherever a tolerance takes them.
+    named: [Length; 2],
+}
+
+impl SpacePair {
+    /// The spaces as the text draws them.
+    pub fn drawn(left: Amount<Length>, right: Amount<Length>) -> Self {
+        Self { left, right, named: [left.nominal, right.nominal] }
+    }
+
+    /// How the text names it: `32 nm`, `30 | 34 nm`.
+    pub fn label(&self) -> String {
+        let [left, right] = self.named.map(|length| trim(length.nm()));
+        if left == right { format!("{left} nm") } else { format!("{left} | {right} nm") }
+    }
 }
 
 /// A row: lines one by one, one space more than lines, mirrors at the middle of the outer spaces.
@@ -176,15 +191,8 @@ impl Site {
 impl Wafer {
     /// All sites: arrays in the order of the text, then rows.
     pub fn sites(&self) -> Vec<Site> {
-        let nm = |length: Amount<Length>| trim(length.nominal.nm());
-        let arrays = self.lines.spaces.iter().enumerate().map(|(array, pair)| {
-            let label = if pair.left == pair.right {
-                format!("{} nm", nm(pair.left))
-            } else {
-                format!("{} | {} nm", nm(pair.left), nm(pair.right))
-            };
-            Site::Array { array, label }
-        });
+        let arrays = self.lines.spaces.iter().enumerate();
+        let arrays = arrays.map(|(array, pair)| Site::Array { array, label: pair.label() });
         let rows = self.rows.iter().enumerate().flat_map(|(row, drawn)| {
             (1..=drawn.spaces.len()).map(move |space| Site::Row {
                 row,

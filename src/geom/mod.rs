@@ -6,12 +6,14 @@
 mod conform;
 mod distance;
 mod hairs;
+mod inside;
 mod point;
 mod region;
 mod scanline;
 
 pub use conform::conform;
 pub use hairs::shaved;
+pub use inside::Inside;
 pub use point::{Bounds, Point};
 pub use region::{Polygon, Region};
 pub use scanline::{Intervals, covered};

@@ -379,7 +379,9 @@ impl<'a> Reader<'a> {
         let previous = self.last(0, at, |p| self.is_polish(p));
         let from = previous.map_or(0, |p| p + 1);
         let why = "needs something above its plane".to_owned();
-        if let Some(film) = self.last(from, at, |p| self.adds(p)) {
+        // Any of them will do: the seal, which it needs anyway, before a film that may come later.
+        let overburden = self.last(from, at, |p| self.seals(p));
+        if let Some(film) = overburden.or_else(|| self.last(from, at, |p| self.adds(p))) {
             self.add(needs, film, at, Reason::Covers, why);
         } else if previous.is_none()
             && self.variant.wafer.over.is_empty()

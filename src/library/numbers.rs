@@ -108,6 +108,16 @@ impl Bounds {
         number.is_finite() && enough && at_most
     }
 
+    /// A number moved from one that can be to `to`, stopped at the bound; where the bound itself
+    /// cannot be, a hundredth of the way short of it.
+    pub fn moved(self, from: f64, to: f64) -> f64 {
+        if self.allow(to) {
+            return to;
+        }
+        let bound = to.clamp(self.low, self.high);
+        if self.allow(bound) { bound } else { bound + 0.01 * (from - bound) }
+    }
+
     /// What can be, in words: `above 0 and at most 1`.
     pub fn words(self) -> String {
         let low = self
@@ -235,5 +245,27 @@ impl Process {
     /// The number that a `with` names (`sticking`, `temperature`).
     pub fn number_named(name: &str) -> Option<&'static NumberKey<Process>> {
         PROCESS_NUMBERS.iter().chain(ARRIVAL_NUMBERS).find(|number| number.name == name)
+    }
+
+    /// Moves the number of a key (`sticking`, `temperature_c`, `rates.SiN`) from one value to
+    /// another as far as can be, shares of the arrival within one together; where it came to.
+    pub fn move_number(&mut self, key: &str, from: f64, to: f64) -> f64 {
+        if let Some((table, name)) = key.split_once('.') {
+            let table = if table == "rates" { &mut self.rates } else { &mut self.grows_on };
+            let moved = Bounds::NOT_NEGATIVE.moved(from, to);
+            table.insert(name.to_owned(), Ranged::exact(moved));
+            return moved;
+        }
+        let mut numbers = PROCESS_NUMBERS.iter().chain(ARRIVAL_NUMBERS);
+        let Some(number) = numbers.find(|number| number.key == key) else { return from };
+        let mut moved = number.bounds.moved(from, to);
+        (number.set)(self, Ranged::exact(moved));
+        let shares = |arrival: &Arrival| arrival.conformal.value + arrival.directional.value;
+        let excess = self.arrival.as_ref().map_or(0.0, shares) - 1.0;
+        if excess > 0.0 && matches!(key, "conformal" | "directional") {
+            moved -= excess;
+            (number.set)(self, Ranged::exact(moved));
+        }
+        moved
     }
 }

@@ -116,7 +116,7 @@ fn trial(traced: &Traced, step: usize, space_nm: f64) -> Variant {
         variant.wafer.lines.width = widths[(space - 1).min(widths.len() - 1)];
     }
     let space = Amount::exact(Length::from_nm(space_nm));
-    variant.wafer.lines.spaces = vec![SpacePair { left: space, right: space }];
+    variant.wafer.lines.spaces = vec![SpacePair::drawn(space, space)];
     variant.wafer.rows.clear();
     variant.steps.truncate(step + 1);
     let sites = variant.sites();

@@ -80,7 +80,7 @@ pub fn step(op: u32, action: impl FnOnce(ProcessUse) -> Action) -> Step {
 
 /// 010 etch, 020 seal of 60 nm, 030 polish: lines 20 nm wide and 80 nm high with these spaces.
 pub fn flow(spaces: &[(f64, f64)]) -> Flow {
-    let spaces = spaces.iter().map(|(l, r)| SpacePair { left: nm(*l), right: nm(*r) }).collect();
+    let spaces = spaces.iter().map(|(l, r)| SpacePair::drawn(nm(*l), nm(*r))).collect();
     let wafer = Wafer {
         below: Vec::new(),
         lines: Lines {

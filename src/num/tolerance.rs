@@ -92,6 +92,9 @@ pub const FIELD_TRIANGLES: usize = 200_000;
 /// Relative slack of an inequality that holds exactly but for rounding.
 pub const FIELD_ROUNDING: f64 = 1e-9;
 
+/// Rounding of an energy that minimising took from a larger one, relative to the larger one.
+pub const FIELD_CANCELLATION: f64 = 1e-12;
+
 /// How much looser than the fine section the coarse one is solved for its capacitance.
 pub const COARSE_FIELD: f64 = 4.0;
 

@@ -1,5 +1,6 @@
 //! Load, run, judge: what `check` does, for every caller.
 
+mod corners;
 mod load;
 mod refine;
 mod run;

@@ -2,6 +2,7 @@
 
 use std::sync::Arc;
 
+use super::corners::Corners;
 use super::refine::{Levels, refine};
 use crate::diag::{Diagnostic, Severity};
 use crate::flow::{Against, Flow, Variant};
@@ -21,11 +22,13 @@ pub struct Options {
     pub accuracy: f64,
     /// Whether splits are judged too.
     pub splits: bool,
+    /// Whether the corners of the tolerances are judged too.
+    pub corners: bool,
 }
 
 impl Default for Options {
     fn default() -> Self {
-        Self { accuracy: ACCURACY, splits: false }
+        Self { accuracy: ACCURACY, splits: false, corners: false }
     }
 }
 
@@ -90,7 +93,7 @@ fn judged_variants(flow: &Flow, splits: bool) -> Vec<usize> {
 }
 
 /// Splits that limits refer to, by index, each once.
-fn references(flow: &Flow) -> Vec<usize> {
+pub(super) fn references(flow: &Flow) -> Vec<usize> {
     let split = |against: &Option<Against>| match against {
         Some(Against::Split(at)) => Some(*at),
         _ => None,
@@ -151,13 +154,25 @@ pub fn judge(flow: &Flow, options: &Options, progress: &Progress) -> Result<Judg
         let graph = Graph::of(flow, variant);
         let cells = &runs[place].fine;
         let context = rules::Context { flow, variant, graph: &graph, cells, sites: &sites };
-        let found = rules::check(&context);
-        findings.extend(found.into_iter().map(|finding| (index, finding)));
-        report.limits.extend(verdict::judge(flow, variant, &measured));
+        let limits = verdict::judge(flow, variant, &measured);
+        let mut found = rules::check(&context);
+        if options.corners {
+            let corners = Corners {
+                flow,
+                variant: index,
+                simulator: &simulator,
+                grain: levels.coarse,
+                field_accuracy: wanted.field_accuracy,
+            };
+            let broken = corners.broken(&limits, &found)?;
+            found.extend(rules::corner_fails(&context, &broken));
+        }
+        findings.extend(found);
+        report.limits.extend(limits);
         report.nets.extend(measured.net_reports());
         report.sites.extend(sites);
     }
-    report.findings = finished(flow, &judged, findings);
+    report.findings = finished(flow, &judged, findings, options.corners);
     let failing = |f: &FindingReport| f.severity == Severity::Error && !f.waived;
     report.verdict = verdict::overall(report.findings.iter().any(failing), &report.limits);
     Ok(Judged { report, runs })
@@ -169,8 +184,12 @@ impl Run {
     }
 }
 
-fn finished(flow: &Flow, judged: &[usize], findings: Vec<(usize, Finding)>) -> Vec<FindingReport> {
-    let findings = findings.into_iter().map(|(_, finding)| finding).collect();
-    let finished = rules::finish(flow, judged, findings);
+fn finished(
+    flow: &Flow,
+    judged: &[usize],
+    findings: Vec<Finding>,
+    corners: bool,
+) -> Vec<FindingReport> {
+    let finished = rules::finish(flow, judged, corners, findings);
     finished.iter().map(|finding| FindingReport::of(flow, finding)).collect()
 }

@@ -10,6 +10,7 @@ mod settings;
 mod waivers;
 
 pub use cautions::{Caution, cautions};
+pub use corner_fails::{Broken, Corner, corner_fails};
 pub use finding::Finding;
 pub use frame::{Context, Needs, Rule, Threshold};
 pub use settings::lay_over;

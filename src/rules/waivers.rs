@@ -1,6 +1,6 @@
 //! What is said once a run, after all its variants.
 
-use super::{Finding, REGISTRY, data_missing, rule, stale_waiver};
+use super::{Finding, REGISTRY, corner_fails, data_missing, rule, stale_waiver};
 use crate::diag::nearest;
 use crate::flow::{Flow, Waiver};
 
@@ -8,8 +8,14 @@ use crate::flow::{Flow, Waiver};
 ///
 /// `judged` are the indices of the variants whose findings are given. A waiver is stale when
 /// nothing it names was found in the variants it speaks of; while some of these were not
-/// judged, it cannot be told and is not.
-pub fn finish(flow: &Flow, judged: &[usize], mut findings: Vec<Finding>) -> Vec<Finding> {
+/// judged, it cannot be told and is not. The same holds for `corner-fails` while no `corners` were
+/// judged.
+pub fn finish(
+    flow: &Flow,
+    judged: &[usize],
+    corners: bool,
+    mut findings: Vec<Finding>,
+) -> Vec<Finding> {
     let mut told: Vec<String> = Vec::new();
     findings.retain(|finding| {
         let again = finding.rule == data_missing::RULE.name && told.contains(&finding.message);
@@ -20,7 +26,8 @@ pub fn finish(flow: &Flow, judged: &[usize], mut findings: Vec<Finding>) -> Vec<
     });
     for (place, waiver) in flow.waivers.iter().enumerate() {
         let used = findings.iter().any(|finding| finding.waiver == Some(place));
-        if !used && all_judged(flow, waiver, judged) {
+        let was_judged = corners || waiver.rule.value != corner_fails::RULE.name;
+        if !used && was_judged && all_judged(flow, waiver, judged) {
             findings.push(stale(flow, waiver));
         }
     }

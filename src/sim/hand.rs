@@ -38,7 +38,7 @@ impl Hand {
             below: vec![Below::Film(film(20.0, "SiCN"))],
             lines: Lines {
                 width: nm(width),
-                spaces: spaces.iter().map(|&s| SpacePair { left: nm(s), right: nm(s) }).collect(),
+                spaces: spaces.iter().map(|&s| SpacePair::drawn(nm(s), nm(s))).collect(),
                 by_pitch: false,
                 taper: Amount::exact(Angle::from_degrees(0.0)),
                 corner_radius: nm(0.0),

@@ -13,6 +13,7 @@ mod closed_forms;
 mod command;
 mod gates;
 mod geojson;
+mod named;
 mod reference;
 mod sections;
 mod shapes;

@@ -8,10 +8,10 @@
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 
-use gapwright::field::{Role, solve};
-use gapwright::library::Library;
-use gapwright::report::geojson::{NamedProblem, read};
+use gapwright::field::solve;
 use serde::Deserialize;
+
+use crate::named::section;
 
 #[derive(Deserialize)]
 struct Answer {
@@ -30,25 +30,6 @@ fn answers(folder: &Path) -> Answers {
     let text = std::fs::read_to_string(&path)
         .unwrap_or_else(|error| panic!("{}: {error}", path.display()));
     serde_json::from_str(&text).unwrap()
-}
-
-fn section(name: &str) -> NamedProblem {
-    let path = folder().join("sections").join(format!("{name}.geojson"));
-    let section = read(&std::fs::read_to_string(path).unwrap()).unwrap();
-    let mut named = section.problem(&Library::built_in()).unwrap();
-    // What the file calls floating is held by nothing.
-    if let Some(at) = named.electrodes.iter().position(|name| name == "floating") {
-        named.electrodes.remove(at);
-        named.problem.electrodes -= 1;
-        for body in &mut named.problem.bodies {
-            body.role = match body.role {
-                Role::Electrode(e) if e == at => Role::Floating(0),
-                Role::Electrode(e) if e > at => Role::Electrode(e - 1),
-                other => other,
-            };
-        }
-    }
-    named
 }
 
 fn compare(answers: &Answers) {

@@ -58,6 +58,23 @@ fn an_electrode_of_two_pieces_is_their_sum() {
     assert!((one.value[2][2] / sum - 1.0).abs() < 1e-4, "{} {sum}", one.value[2][2]);
 }
 
+/// With nothing but mirrors and an open edge around it, no field leaves an electrode: exactly 0.
+#[test]
+fn an_electrode_alone_has_no_capacitance() {
+    for (top, floating) in [(Edge::Open, false), (Edge::Mirror, false), (Edge::Open, true)] {
+        let x = [0.0, 100.0];
+        let mut bodies = vec![slab([10.0, 30.0], [20.0, 60.0], Role::Electrode(0))];
+        if floating {
+            bodies.push(slab([60.0, 80.0], [20.0, 60.0], Role::Floating(0)));
+        }
+        let problem = Problem { x, z: [0.0, 100.0], top, bottom: top, bodies, electrodes: 1 };
+        let solved = solve(&problem, 5e-3).unwrap();
+        let [value, low, high] = entry(&solved, 0, 0);
+        assert!(solved.converged && low <= 0.0 && 0.0 <= high, "{low} to {high}");
+        assert!(value.abs() < 1e-9 && high - low < 1e-6, "{value}: {low} to {high}");
+    }
+}
+
 /// A conductor that pinches at a point carries charge on both lobes.
 #[test]
 fn a_pinched_conductor_converges() {

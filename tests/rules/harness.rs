@@ -41,7 +41,7 @@ pub fn findings(flow: &Flow) -> Result<Vec<Finding>, String> {
     let cells = grown.map_err(|error| error.to_string())?;
     let graph = Graph::of(flow, variant);
     let context = Context { flow, variant, graph: &graph, cells: &cells, sites: &[] };
-    Ok(rules::finish(flow, &[0], rules::check(&context)))
+    Ok(rules::finish(flow, &[0], false, rules::check(&context)))
 }
 
 /// A finding on one line: severity, rule, operation, site, message.

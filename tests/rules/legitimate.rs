@@ -3,6 +3,8 @@
 use std::fs;
 use std::path::{Path, PathBuf};
 
+use rayon::prelude::*;
+
 use crate::harness::{findings, grave, resolve};
 
 pub fn flows_in(folder: &str) -> Vec<PathBuf> {
@@ -15,14 +17,13 @@ pub fn flows_in(folder: &str) -> Vec<PathBuf> {
 
 /// What is graver than a note in each flow of a folder.
 fn alarms(folder: &str) -> Vec<String> {
-    let mut alarms = Vec::new();
-    for file in flows_in(folder) {
+    let alarms = flows_in(folder).into_par_iter().flat_map(|file| {
         let name = file.file_stem().unwrap().to_string_lossy().into_owned();
         let flow = resolve(&name, &fs::read_to_string(&file).unwrap(), None);
         let lines = findings(&flow).map_or_else(|error| vec![error], |f| grave(&flow, &f));
-        alarms.extend(lines.iter().map(|line| format!("{name}: {line}")));
-    }
-    alarms
+        lines.into_iter().map(move |line| format!("{name}: {line}")).collect::<Vec<_>>()
+    });
+    alarms.collect()
 }
 
 #[test]

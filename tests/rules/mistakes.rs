@@ -5,6 +5,7 @@ use std::fs;
 
 use gapwright::diag::Severity;
 use gapwright::rules::Finding;
+use rayon::prelude::*;
 
 use crate::harness::{findings, line, resolve};
 use crate::legitimate::flows_in;
@@ -26,16 +27,16 @@ fn shown(name: &str, text: &str) -> (String, Vec<String>, Vec<String>) {
 fn mistakes_are_found_and_nothing_else() {
     assert_eq!(flows_in("mistakes").len(), 8);
     assert_eq!(flows_in("corrected").len(), 8);
-    let mut wrong = Vec::new();
-    let mut all = String::new();
-    for file in flows_in("mistakes") {
-        let name = file.file_stem().unwrap().to_string_lossy().into_owned();
-        let (shown, got, expected) = shown(&name, &fs::read_to_string(&file).unwrap());
-        if got != expected {
-            wrong.push(format!("{name}:\n{shown}"));
-        }
-        all.push_str(&format!("{name}\n\n{shown}\n"));
-    }
+    let found: Vec<_> = flows_in("mistakes")
+        .into_par_iter()
+        .map(|file| {
+            let name = file.file_stem().unwrap().to_string_lossy().into_owned();
+            let (shown, got, expected) = shown(&name, &fs::read_to_string(&file).unwrap());
+            (format!("{name}\n\n{shown}\n"), got == expected)
+        })
+        .collect();
+    let wrong: Vec<_> = found.iter().filter(|(_, right)| !right).map(|(s, _)| s.clone()).collect();
+    let all: String = found.into_iter().map(|(shown, _)| shown).collect();
     assert!(wrong.is_empty(), "{}", wrong.join("\n"));
     insta::assert_snapshot!("mistakes", all);
 }

@@ -252,7 +252,7 @@ impl<'t> Build<'t> {
                 for pair in pairs {
                     let left = pair.left.value;
                     let right = pair.right.map_or(left, |right| right.value);
-                    spaces.push(SpacePair { left, right });
+                    spaces.push(SpacePair::drawn(left, right));
                     spans.push(pair.span());
                 }
             }
@@ -269,7 +269,7 @@ impl<'t> Build<'t> {
                         continue;
                     }
                     let space = Amount { nominal, three_sigma: pitch.value.three_sigma };
-                    spaces.push(SpacePair { left: space, right: space });
+                    spaces.push(SpacePair::drawn(space, space));
                     spans.push(pitch.span);
                 }
             }

@@ -127,6 +127,13 @@ fn insulator(region: &OutlinedRegion, index: usize, library: &Library) -> Result
 }
 
 impl NamedProblem {
+    /// The regions of an electrode, by their place in the file.
+    fn features_of(&self, electrode: usize) -> String {
+        let bodies = self.problem.bodies.iter().enumerate();
+        let own = bodies.filter(|(_, body)| body.role == Role::Electrode(electrode));
+        own.map(|(at, _)| format!("features[{at}]")).collect::<Vec<_>>().join(", ")
+    }
+
     /// An error of the solver in the words of the file.
     pub fn explain(&self, error: &FieldError) -> String {
         let name = |index: &usize| self.electrodes.get(*index).map_or("?", String::as_str);
@@ -135,12 +142,15 @@ impl NamedProblem {
                 "no region has the property `electrode`; name at least one conductor".into()
             }
             FieldError::ElectrodeAbsent(electrode) => format!(
-                "electrode `{}` has no area inside the section, or other regions cover it",
+                "{}: electrode `{}` has no area inside the section, or other regions cover it",
+                self.features_of(*electrode),
                 name(electrode)
             ),
             FieldError::ElectrodesTouch { first, second, at_nm: [x, z] } => format!(
-                "electrode `{}` touches electrode `{}` at ({x:.3}, {z:.3}) nm; give them one name \
-                 or a gap",
+                "{}, {}: electrode `{}` touches electrode `{}` at ({x:.3}, {z:.3}) nm; give them \
+                 one name or a gap",
+                self.features_of(*first),
+                self.features_of(*second),
                 name(first),
                 name(second)
             ),

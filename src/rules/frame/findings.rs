@@ -66,6 +66,13 @@ impl Found {
         self
     }
 
+    /// At the site or sites of this name; everywhere without.
+    #[must_use]
+    pub fn at_label(mut self, label: Option<&str>) -> Self {
+        self.site = label.map(str::to_owned);
+        self
+    }
+
     /// At a place of a cell's section, and so at the site of the nearest space.
     #[must_use]
     pub fn at_place(mut self, cell: &CellTrace, place: Point) -> Self {

@@ -46,6 +46,12 @@ pub fn run(rules: &[&'static Rule], context: &Context<'_>) -> Vec<Finding> {
     findings
 }
 
+/// Findings of one rule from facts that were found outside its check.
+pub fn told(rule: &'static Rule, context: &Context<'_>, found: Vec<Found>) -> Vec<Finding> {
+    let tray = Findings { found, ..Findings::of(rule, context) };
+    gather(&tray, tray.found.iter(), context)
+}
+
 /// One finding a fact; the sites at which it holds become one list.
 fn gather<'f>(
     tray: &Findings<'_>,

@@ -1,6 +1,8 @@
 //! What checks ask of a section: who touches whom, how thick, how far.
 
-use crate::geom::{Bounds, Point, Region};
+use std::cell::OnceCell;
+
+use crate::geom::{Bounds, Inside, Point, Region};
 use crate::sim::{Body, DrawnLine, Section};
 
 /// How far outside an edge a neighbour is looked for, in nm: far above the grid and the
@@ -23,28 +25,33 @@ pub struct Contact<'a> {
     pub length_nm: f64,
 }
 
-/// A section with the boxes of its bodies, for many questions about points.
+/// A section, for many questions about points.
 pub struct Look<'a> {
     section: &'a Section,
     boxes: Vec<Option<Bounds>>,
+    /// The bodies that were asked about, prepared.
+    inside: Vec<OnceCell<Inside>>,
 }
 
 impl<'a> Look<'a> {
     /// Prepares a section.
     pub fn at(section: &'a Section) -> Self {
         let boxes = section.bodies.iter().map(|body| body.region.bounds()).collect();
-        Self { section, boxes }
+        let inside = section.bodies.iter().map(|_| OnceCell::new()).collect();
+        Self { section, boxes, inside }
     }
 
     /// The body at a point.
     pub fn body(&self, p: Point) -> Option<&'a Body> {
-        let holds = |bounds: &Option<Bounds>| {
-            bounds.is_some_and(|b| {
+        let holds = |at: &usize| {
+            let near = self.boxes[*at].is_some_and(|b| {
                 (b.min.x..=b.max.x).contains(&p.x) && (b.min.z..=b.max.z).contains(&p.z)
-            })
+            });
+            let region = &self.section.bodies[*at].region;
+            near && self.inside[*at].get_or_init(|| Inside::of(region)).contains(p)
         };
-        let mut near = self.section.bodies.iter().zip(&self.boxes).filter(|(_, b)| holds(b));
-        near.find(|(body, _)| body.region.contains(p)).map(|(body, _)| body)
+        let found = (0..self.section.bodies.len()).find(holds);
+        found.map(|at| &self.section.bodies[at])
     }
 
     /// Whether a point lies in a void.
