@@ -27,6 +27,7 @@ pub mod sim;
 pub mod measure;
 pub mod report;
 pub mod rules;
+pub mod study;
 pub mod verdict;
 
 pub mod cli;

@@ -2,8 +2,8 @@
 
 use std::io;
 
+use super::Shared;
 use super::output::{self, Failure};
-use super::{Exit, Shared};
 use crate::diag::Diagnostic;
 use crate::flow::Flow;
 use crate::pipeline::{self, LoadError, Loaded, Messages, RunError};
@@ -21,6 +21,19 @@ pub(super) fn load(
     shared: &Shared,
 ) -> Result<Loaded, Failure> {
     let name = if path == "-" { name_of_stdin } else { path };
+    load_named(world, path, name, shared)
+}
+
+/// Loads a flow that messages call by a name of its own.
+///
+/// # Errors
+/// As [`load`].
+pub(super) fn load_named(
+    world: &dyn World,
+    path: &str,
+    name: &str,
+    shared: &Shared,
+) -> Result<Loaded, Failure> {
     match pipeline::load(world, path, name) {
         Ok(loaded) => {
             for said in &loaded.messages {
@@ -43,13 +56,7 @@ pub(super) fn failure(error: RunError, flow: &Flow, shared: &Shared) -> Failure 
     };
     match error {
         RunError::Unusable(diagnostic) => Failure::unusable(at_place(diagnostic)),
-        RunError::Internal(message) => Failure {
-            exit: Exit::Internal,
-            message: format!(
-                "internal check failed, no figure is given: {message}\nPlease report the flow that \
-                 shows it."
-            ),
-        },
+        RunError::Internal(message) => Failure::internal(&message),
     }
 }
 

@@ -1,11 +1,13 @@
 //! The command line: one subcommand a file, the shared conventions beside them.
 
 mod check;
+mod compare;
 mod disk;
 mod draw;
 mod exit;
 mod explain;
 mod field;
+mod git;
 mod input;
 mod library;
 mod order;
@@ -49,6 +51,7 @@ pub(crate) struct Shared {
 #[derive(Debug, Subcommand)]
 enum Command {
     Check(check::Args),
+    Compare(compare::Args),
     Draw(draw::Args),
     Explain(explain::Args),
     Field(field::Args),
@@ -90,6 +93,7 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> Exit {
     }
     let ended = match &cli.command {
         Command::Check(args) => check::run(args, &cli.shared),
+        Command::Compare(args) => compare::run(args, &cli.shared),
         Command::Draw(args) => draw::run(args, &cli.shared),
         Command::Explain(args) => explain::run(args, &cli.shared),
         Command::Field(args) => field::run(args, &cli.shared),

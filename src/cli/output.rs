@@ -16,6 +16,17 @@ pub(crate) struct Failure {
 }
 
 impl Failure {
+    /// A check of the program on itself failed.
+    pub fn internal(message: &dyn Display) -> Self {
+        Self {
+            exit: Exit::Internal,
+            message: format!(
+                "internal check failed, no figure is given: {message}\nPlease report the flow that \
+                 shows it."
+            ),
+        }
+    }
+
     /// The input or the command line cannot be used.
     pub fn unusable(message: impl Display) -> Self {
         Self { exit: Exit::Unusable, message: message.to_string() }
@@ -56,13 +67,28 @@ pub(crate) fn emit(bytes: &[u8], file: Option<&Path>) -> Result<(), Failure> {
 /// A temporary file beside the target, renamed onto it once complete.
 fn write_whole(bytes: &[u8], path: &Path) -> io::Result<()> {
     let folder = path.parent().filter(|p| !p.as_os_str().is_empty()).unwrap_or(Path::new("."));
-    let mut file = tempfile::NamedTempFile::new_in(folder)?;
+    let mut file = new_file().tempfile_in(folder)?;
     file.write_all(bytes)?;
-    // A temporary file is its owner's alone; what replaces a file keeps that file's permissions.
+    // What replaces a file keeps that file's permissions.
     if let Ok(before) = path.metadata() {
         file.as_file().set_permissions(before.permissions())?;
     }
     file.as_file().sync_all()?;
     file.persist(path).map_err(|error| error.error)?;
     Ok(())
+}
+
+/// A file as any program makes one: a temporary file is its owner's alone unless asked otherwise;
+/// the system takes away what the user's mask forbids.
+#[cfg(unix)]
+fn new_file() -> tempfile::Builder<'static, 'static> {
+    use std::os::unix::fs::PermissionsExt;
+    let mut builder = tempfile::Builder::new();
+    builder.permissions(std::fs::Permissions::from_mode(0o666));
+    builder
+}
+
+#[cfg(not(unix))]
+fn new_file() -> tempfile::Builder<'static, 'static> {
+    tempfile::Builder::new()
 }

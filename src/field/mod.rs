@@ -13,6 +13,7 @@ mod elements;
 mod error;
 mod mixture;
 mod outline;
+mod potential;
 mod primal;
 mod refinement;
 mod section;
@@ -22,6 +23,7 @@ mod triangulation;
 use crate::geom::Region;
 
 pub use error::FieldError;
+pub use potential::equipotentials;
 pub use solve::{solve, solve_variants};
 
 /// Vacuum permittivity in aF/µm (CODATA 2018: 8.8541878128e-12 F/m).

@@ -116,7 +116,7 @@ pub fn solve_variants(
 }
 
 /// One role a zone: those of the bodies, and vacuum.
-fn zone_roles(problem: &Problem, roles: &[Role]) -> Result<Vec<Role>, FieldError> {
+pub(super) fn zone_roles(problem: &Problem, roles: &[Role]) -> Result<Vec<Role>, FieldError> {
     let insulates = |role: &Role| matches!(role, Role::Dielectric(_));
     let alike = |(a, b): (&Role, &Role)| a == b || (insulates(a) && insulates(b));
     let own = problem.bodies.iter().map(|body| &body.role);

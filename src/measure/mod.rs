@@ -37,7 +37,7 @@ pub use closing_space::{Fineness, Grow};
 pub use crack::critical_thickness_nm;
 pub use delay::{Driven, delay_ps};
 pub use drying::{FreeLine, drying_deflection_nm};
-pub use electrical::{Electrical, Reference};
+pub use electrical::{Electrical, FieldSection, Reference, field_section};
 pub use geometry::{Geometry, Traced, for_all, site_states};
 pub use mean_free_path::mean_free_path_nm;
 pub use measured::{Measured, Traces, Wanted};

@@ -101,3 +101,6 @@ pub const COARSE_FIELD: f64 = 4.0;
 /// Step of the search for the widest space that a seal closes, over that space, at which the
 /// search ends.
 pub const CLOSING_SPACE: f64 = 0.002;
+
+/// Two figures that differ by less than this part of themselves are the same but for rounding.
+pub const SAME_FIGURE: f64 = 1e-9;

@@ -12,7 +12,13 @@ impl Report {
 
     /// The JSON Schema of [`Self::json`].
     pub fn json_schema() -> String {
-        let schema = schemars::schema_for!(Report);
-        serde_json::to_string_pretty(&schema).expect("a schema is always JSON") + "\n"
+        schema::<Self>()
     }
+}
+
+/// The JSON Schema (2020-12) of what a type is written as.
+pub fn schema<T: schemars::JsonSchema>() -> String {
+    let settings = schemars::generate::SchemaSettings::draft2020_12().for_serialize();
+    let schema = settings.into_generator().into_root_schema_for::<T>();
+    serde_json::to_string_pretty(&schema).expect("a schema is always JSON") + "\n"
 }

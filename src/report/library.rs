@@ -117,6 +117,16 @@ fn said(told: &Told) -> String {
     }
 }
 
+/// What a fact says, range and unit included: `4.2 (4.1 to 4.5) nm`.
+pub fn told(fact: &Fact) -> String {
+    match &fact.told {
+        Told::Number(number, unit) => format!("{} {}", ranged(number), unit.symbol()),
+        _ => said(&fact.told),
+    }
+    .trim_end()
+    .to_owned()
+}
+
 /// Key of a fact as one word: `rates.SiN`.
 fn key(fact: &Fact) -> String {
     fact.path.join(".")

@@ -4,6 +4,7 @@
 use super::columns::{Cell, columns};
 use super::figures;
 use super::paint::Paint;
+use super::words::counted;
 use super::{FindingReport, FlowReport, LimitReport, NetReport, Report, Verdict};
 use crate::diag::Severity;
 use crate::flow::{Dimension, State};
@@ -34,47 +35,24 @@ fn cautions(run: &FlowReport, paint: Paint) -> String {
 }
 
 fn headline(run: &FlowReport, paint: Paint) -> String {
+    let word = run.verdict.word();
     let verdict = match run.verdict {
-        Verdict::Pass => paint.good("PASS"),
-        Verdict::Fail => paint.bad("FAIL"),
-        Verdict::Undecided => paint.doubtful("UNDECIDED"),
+        Verdict::Pass => paint.good(word),
+        Verdict::Fail => paint.bad(word),
+        Verdict::Undecided => paint.doubtful(word),
     };
-    let broken = run.limits.iter().filter(|limit| limit.holds == Some(false)).count();
-    let open = run.limits.iter().filter(|limit| limit.holds.is_none()).count();
-    let count =
-        |severity| run.findings.iter().filter(|f| f.severity == severity && !f.waived).count();
-    let mut parts = vec![match (broken, open) {
-        (0, 0) => format!("{} limits hold", run.limits.len()),
-        (_, 0) => format!("{broken} of {} limits broken", run.limits.len()),
-        _ => format!("{broken} of {} limits broken, {open} cannot be told", run.limits.len()),
-    }];
-    parts.extend(counted(count(Severity::Error), "error"));
-    parts.extend(counted(count(Severity::Warning), "warning"));
-    parts.extend(counted(count(Severity::Note), "note"));
-    parts.extend(counted(run.findings.iter().filter(|f| f.waived).count(), "waived finding"));
     let mut text = format!(
         "{verdict}  {}  {}\n      {}\n",
         paint.heading(&run.flow),
         paint.faint(&run.file),
-        parts.join(", ")
+        run.summary()
     );
-    let judged = |split: &String| run.sites.iter().any(|s| s.split.as_ref() == Some(split));
-    if !run.splits.is_empty() && !run.splits.iter().any(judged) {
-        text.push_str(&format!(
-            "      {} not judged (--splits judges them): {}\n",
-            counted(run.splits.len(), "split").unwrap_or_default(),
-            run.splits.join(", ")
-        ));
+    let splits = run.unjudged_splits();
+    if let Some(count) = counted(splits.len(), "split") {
+        let names = splits.join(", ");
+        text.push_str(&format!("      {count} not judged (--splits judges them): {names}\n"));
     }
     text
-}
-
-fn counted(count: usize, what: &str) -> Option<String> {
-    match count {
-        0 => None,
-        1 => Some(format!("1 {what}")),
-        _ => Some(format!("{count} {what}s")),
-    }
 }
 
 fn sites(run: &FlowReport, paint: Paint) -> String {
@@ -172,36 +150,15 @@ fn limit_row(limit: &LimitReport, paint: Paint) -> Vec<Cell> {
         Some(false) => Cell::painted("BROKEN", |t| paint.bad(t)),
         None => Cell::painted("cannot tell", |t| paint.doubtful(t)),
     };
-    let site = limit.site.clone().unwrap_or_default();
-    let place = match &limit.split {
-        Some(split) => format!("{site} in {split}").trim().to_owned(),
-        None => site,
-    };
-    let dimension = dimension(limit);
-    let value = match (limit.state, limit.value) {
-        (Some(state), _) => state.name().to_owned(),
-        (None, Some(value)) => figures::figure(value, dimension),
-        (None, None) => "-".to_owned(),
-    };
-    let margin =
-        limit.margin.map(|margin| format!("margin {}", figures::amount(margin, dimension)));
+    let margin = limit.shown_margin().map(|margin| format!("margin {margin}"));
     vec![
         verdict,
         Cell::plain(&limit.text),
-        Cell::plain(place),
-        Cell::plain(value),
+        Cell::plain(limit.place()),
+        Cell::plain(limit.shown_value().unwrap_or_else(|| "-".to_owned())),
         Cell::plain(margin.unwrap_or_default()),
         Cell::painted(limit.note.as_deref().unwrap_or(""), |t| paint.faint(t)),
     ]
-}
-
-/// The dimension in which a limit's value is shown: that of the quantity it names.
-fn dimension(limit: &LimitReport) -> Dimension {
-    let name = limit.text.split_whitespace().next().unwrap_or_default();
-    crate::flow::Quantity::ALL
-        .iter()
-        .find(|quantity| quantity.name() == name)
-        .map_or(Dimension::One, |quantity| quantity.dimension())
 }
 
 fn findings(run: &FlowReport, paint: Paint) -> String {
@@ -222,12 +179,10 @@ fn finding_text(run: &FlowReport, finding: &FindingReport, paint: Paint) -> Stri
         (false, Severity::Warning) => paint.doubtful("warning"),
         (false, Severity::Note) => paint.faint("note"),
     };
-    let mut place = String::new();
-    for (word, value) in [("on", &finding.step), ("at", &finding.site), ("in", &finding.split)] {
-        if let Some(value) = value {
-            place.push_str(&format!(" {word} {value}"));
-        }
-    }
+    let place = match finding.place().as_str() {
+        "" => String::new(),
+        place => format!(" {place}"),
+    };
     let at = format!("{}:{}:{}", run.file, finding.line, finding.column);
     let mut text = format!(
         "    {severity}  {}{place}  {}\n        {}\n",

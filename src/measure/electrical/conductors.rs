@@ -10,7 +10,7 @@ use std::collections::BTreeMap;
 use super::array::{Array, Owner};
 use crate::flow::Variant;
 use crate::geom::Region;
-use crate::library::Library;
+use crate::library::{Library, MaterialId};
 use crate::measure::reading::Missing;
 use crate::num::tolerance::ON_EDGE_NM;
 
@@ -66,6 +66,8 @@ impl Electrode {
 pub(super) struct Conductors {
     /// Connected pieces of metal.
     pub pieces: Vec<(Region, Held)>,
+    /// What each of them is made of.
+    pub materials: Vec<MaterialId>,
     /// The electrodes, in the order of the matrix.
     pub electrodes: Vec<Electrode>,
     /// Names by `as` that an electrode answers to besides its own, with its index.
@@ -80,12 +82,13 @@ impl Conductors {
         library: &Library,
         with_ground: bool,
     ) -> Result<Self, Missing> {
-        let parts: Vec<(Owner, Region)> = array
+        let metal = array
             .pieces
             .iter()
             .filter(|piece| library.material(piece.material).kind.conducts())
-            .flat_map(|piece| piece.region.parts().map(|part| (piece.owner, part)))
-            .collect();
+            .flat_map(|piece| piece.region.parts().map(|part| (piece.material, piece.owner, part)));
+        let (materials, parts): (Vec<_>, Vec<_>) =
+            metal.map(|(material, owner, part)| (material, (owner, part))).unzip();
         let groups = groups(&parts);
         let mut found: BTreeMap<usize, Group> = BTreeMap::new();
         for ((owner, _), group) in parts.iter().zip(&groups) {
@@ -114,7 +117,7 @@ impl Conductors {
             }
         }
         let pieces = parts.into_iter().zip(&groups).map(|((_, region), g)| (region, held[g]));
-        Ok(Self { pieces: pieces.collect(), electrodes, aliases })
+        Ok(Self { pieces: pieces.collect(), materials, electrodes, aliases })
     }
 }
 

@@ -12,6 +12,7 @@ mod array;
 mod conductors;
 mod matrix;
 mod problem;
+mod section;
 #[cfg(test)]
 mod tests;
 
@@ -21,11 +22,12 @@ use self::array::Array;
 use self::conductors::Conductors;
 use self::matrix::{Terminals, loss, matrix, ratio, widened};
 use self::problem::{Above, Filling, Posed};
+pub use self::section::{FieldSection, field_section};
 use super::reading::{Missing, Reading, Unclear};
 use super::{ElectricalFigures, Figure, MeasureError, Traced};
 use crate::field::{self, Capacitance, FieldError};
-use crate::flow::Quantity;
-use crate::library::MaterialId;
+use crate::flow::{Quantity, Site, Variant};
+use crate::library::{Library, MaterialId};
 use crate::num::tolerance::{COARSE_FIELD, GROWTH_SAFETY};
 use crate::sim::Section;
 
@@ -259,15 +261,8 @@ fn solve(
     accuracy: f64,
 ) -> Result<Solved, Stop> {
     let library = &traced.flow.library;
-    let array = Array::of(section, traced.variant, traced.site, library)
-        .ok_or(Stop::Failed(MeasureError::Inconsistent("a section without solid")))?;
-    let above = traced
-        .flow
-        .next_level
-        .as_ref()
-        .map(|next| Above { distance_nm: next.distance.nominal.nm(), material: next.material });
-    let conductors = Conductors::of(&array, traced.variant, library, above.is_some())?;
-    let posed = Posed::new(&array, &conductors, above, library);
+    let above = Above::of(traced.flow);
+    let (array, conductors, posed) = pose(section, traced.variant, traced.site, library, above)?;
     let has_void = !array.voids.is_empty();
     let between = traced.variant.wafer.between.as_ref().map(|between| between.material);
     let default = between.or_else(|| array.voids.iter().find_map(|(_, roof)| *roof));
@@ -287,4 +282,19 @@ fn solve(
     let fine = fillings.into_iter().zip(solved).collect();
     let open_top = above.is_none();
     Ok(Solved { conductors, fine, coarse: None, default, has_void, open_top })
+}
+
+/// The lines around a site as a field problem.
+fn pose(
+    section: &Section,
+    variant: &Variant,
+    site: &Site,
+    library: &Library,
+    above: Option<Above>,
+) -> Result<(Array, Conductors, Posed), Stop> {
+    let array = Array::of(section, variant, site, library)
+        .ok_or(Stop::Failed(MeasureError::Inconsistent("a section without solid")))?;
+    let conductors = Conductors::of(&array, variant, library, above.is_some())?;
+    let posed = Posed::new(&array, &conductors, above, library);
+    Ok((array, conductors, posed))
 }

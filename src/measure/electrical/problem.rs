@@ -3,6 +3,7 @@
 use super::array::{Array, Owner};
 use super::conductors::{Conductors, Electrode, Held};
 use crate::field::{Body, Edge, Problem, Role};
+use crate::flow::Flow;
 use crate::geom::Region;
 use crate::library::{Library, MaterialId};
 use crate::measure::reading::Missing;
@@ -40,6 +41,14 @@ pub(super) struct Above {
     pub distance_nm: f64,
     /// Between.
     pub material: MaterialId,
+}
+
+impl Above {
+    /// The next level of a flow, where it has one.
+    pub fn of(flow: &Flow) -> Option<Self> {
+        let next = flow.next_level.as_ref()?;
+        Some(Self { distance_nm: next.distance.nominal.nm(), material: next.material })
+    }
 }
 
 /// A field problem whose insulators know what they are.
@@ -110,6 +119,19 @@ impl Posed {
             electrodes: conductors.electrodes.len(),
         };
         Self { problem, stuff }
+    }
+
+    /// What each body is made of; `None` for what is empty, and for the next level.
+    pub fn materials(&self, conductors: &Conductors) -> Vec<Option<MaterialId>> {
+        let insulators = self.stuff.iter().map(|(what, _)| match what {
+            Stuff::Material(material) => Some(*material),
+            Stuff::Ambient(material) => *material,
+            Stuff::Void(_) => None,
+        });
+        let metal = conductors.materials.iter().map(|material| Some(*material));
+        let mut all: Vec<_> = insulators.chain(metal).collect();
+        all.resize(self.problem.bodies.len(), None);
+        all
     }
 
     /// The role of every body in one variant.

@@ -11,6 +11,8 @@ pub(super) const INK: &str = "#1b1b1b";
 pub(super) const FAINT: &str = "#6a6a6a";
 /// Ink of marks that are to be seen first.
 pub(super) const MARK: &str = "#b3004b";
+/// Ink of field lines and of lines of equal potential.
+pub(super) const FIELD: &str = "#00429d";
 /// Paper.
 pub(super) const PAPER: &str = "#ffffff";
 
@@ -110,6 +112,18 @@ impl Canvas {
             px(y),
             escape(words)
         );
+    }
+
+    /// A small number on paper, to be spoken of elsewhere.
+    pub(super) fn disc(&mut self, [x, y]: [f64; 2], radius: f64, number: &str) {
+        let _ = writeln!(
+            self.body,
+            "<circle cx=\"{}\" cy=\"{}\" r=\"{radius}\" fill=\"{PAPER}\" stroke=\"{INK}\" \
+             stroke-width=\"0.8\"/>",
+            px(x),
+            px(y)
+        );
+        self.words([x, y + 0.36 * 1.4 * radius], 1.4 * radius, Anchor::Middle, INK, false, number);
     }
 
     /// The finished SVG of a size in pixels.

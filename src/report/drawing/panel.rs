@@ -5,8 +5,8 @@
 
 use std::collections::BTreeMap;
 
-use super::canvas::{Anchor, Canvas, FAINT, INK, MARK};
-use super::palette::Fill;
+use super::canvas::{Anchor, Canvas, FAINT, FIELD, MARK};
+use super::palette::fills;
 use crate::geom::{Point, Region};
 use crate::library::{Library, MaterialId};
 use crate::sim::Section;
@@ -18,8 +18,12 @@ pub struct Panel<'a> {
     pub title: String,
     /// Below the title, smaller.
     pub caption: String,
+    /// Below the picture: figures of the voids, one line each.
+    pub notes: Vec<String>,
     /// What is drawn.
     pub section: &'a Section,
+    /// Where the materials of the section are.
+    pub library: &'a Library,
     /// What is marked on it.
     pub marks: Marks,
 }
@@ -29,17 +33,10 @@ pub struct Panel<'a> {
 pub struct Marks {
     /// Polish plane, nm above the line bottom.
     pub plane_nm: Option<f64>,
-    /// Words beside voids.
-    pub voids: Vec<VoidMark>,
-}
-
-/// Words beside one void.
-#[derive(Debug, Clone)]
-pub struct VoidMark {
-    /// A point inside the void, in the section's coordinates, nm.
-    pub at: Point,
-    /// Lines of words.
-    pub words: Vec<String>,
+    /// Numbers of the voids that the notes speak of, each at a point inside its void.
+    pub voids: Vec<(Point, usize)>,
+    /// Lines of equal potential or of the field, in the section's coordinates, nm.
+    pub lines: Vec<Vec<Point>>,
 }
 
 /// How much of a section is seen, in nm.
@@ -102,12 +99,12 @@ fn unfolded(region: &Region, section: &Section, window: &Window) -> Region {
 pub(super) fn draw(
     canvas: &mut Canvas,
     panel: &Panel,
-    library: &Library,
-    fills: &BTreeMap<MaterialId, Fill>,
     window: &Window,
     origin: [f64; 2],
     scale: f64,
 ) {
+    let library = panel.library;
+    let fills = fills(library);
     let place = |p: Point| {
         [origin[0] + (p.x - window.x[0]) * scale, origin[1] + (window.z[1] - p.z) * scale]
     };
@@ -123,6 +120,10 @@ pub(super) fn draw(
     }
     for void in &panel.section.voids {
         canvas.outlined(&pixels(&unfolded(void, panel.section, window)), MARK);
+    }
+    for line in &panel.marks.lines {
+        let points: Vec<_> = line.iter().map(|&p| place(p)).collect();
+        canvas.line(&points, FIELD, 0.9, "");
     }
     for seam in &panel.section.seams {
         let points: Vec<_> = seam.points.iter().map(|&p| place(p)).collect();
@@ -228,12 +229,7 @@ fn marks(canvas: &mut Canvas, panel: &Panel, window: &Window, place: impl Fn(Poi
     if let Some(plane) = panel.marks.plane_nm {
         level(canvas, plane, MARK, "7 3", "polish plane");
     }
-    for mark in &panel.marks.voids {
-        let [x, y] = place(mark.at);
-        let first = y - 6.0 * (mark.words.len() as f64 - 1.0);
-        for (at, words) in mark.words.iter().enumerate() {
-            let baseline = first + 12.0 * at as f64;
-            canvas.words([x, baseline], 9.0, Anchor::Middle, INK, true, words);
-        }
+    for (at, number) in &panel.marks.voids {
+        canvas.disc(place(*at), 7.0, &number.to_string());
     }
 }

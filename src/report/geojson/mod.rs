@@ -4,6 +4,7 @@
 //! materials up and hands the section to the field.
 
 mod read;
+mod section;
 mod write;
 
 use thiserror::Error;

@@ -2,20 +2,20 @@
 
 use maud::{Markup, html};
 
-use crate::flow::{Dimension, Quantity};
-use crate::report::figures::{amount, figure};
 use crate::report::{FlowReport, LimitReport};
 
-/// One row a limit; the bar is the margin over the limit's own size, full at the whole of it.
+/// One row a limit, those that do not hold first; the bar is the margin over the limit's own size, full at the whole of it.
 pub(super) fn limits(report: &FlowReport) -> Markup {
+    let mut ordered: Vec<_> = report.limits.iter().collect();
+    ordered.sort_by_key(|limit| limit.holds.map_or(1, |holds| if holds { 2 } else { 0 }));
     html! {
-        @if !report.limits.is_empty() {
+        @if !ordered.is_empty() {
             section aria-labelledby="limits" {
                 h2 #limits { "Limits" }
-                div.scroll {
+                div.scroll tabindex="0" role="region" aria-labelledby="limits" {
                     table {
-                        thead { tr { @for name in ["", "limit", "where", "figure", "margin", ""] { th scope="col" { (name) } } } }
-                        tbody { @for limit in &report.limits { (row(limit)) } }
+                        thead { tr { @for name in ["verdict", "limit", "where", "figure", "margin", "margin of the limit", "note"] { th scope="col" { (name) } } } }
+                        tbody { @for limit in &ordered { (row(limit)) } }
                     }
                 }
             }
@@ -24,30 +24,20 @@ pub(super) fn limits(report: &FlowReport) -> Markup {
 }
 
 fn row(limit: &LimitReport) -> Markup {
-    let (class, word) = match limit.holds {
-        Some(true) => ("good", "holds"),
-        Some(false) => ("bad", "broken"),
-        None => ("doubtful", "cannot tell"),
-    };
-    let dimension = dimension(limit);
-    let place = match (&limit.site, &limit.split) {
-        (Some(site), Some(split)) => format!("{site} in {split}"),
-        (Some(one), None) | (None, Some(one)) => one.clone(),
-        (None, None) => String::new(),
-    };
-    let value = match (limit.state, limit.value) {
-        (Some(state), _) => state.name().to_owned(),
-        (None, Some(value)) => figure(value, dimension),
-        (None, None) => "–".to_owned(),
+    let class = match limit.holds {
+        Some(true) => "good",
+        Some(false) => "bad",
+        None => "doubtful",
     };
     html! {
         tr {
-            td { span.word.(class) { (word) } }
+            td { span.word.(class) { (limit.word()) } }
             th scope="row" { code { (limit.text) } }
-            td { (place) }
-            td { (value) }
-            td { (limit.margin.map_or(String::new(), |margin| amount(margin, dimension))) }
-            td { (bar(limit)) @if let Some(note) = &limit.note { " " span.faint { (note) } } }
+            td { (limit.place()) }
+            td { (limit.shown_value().unwrap_or_else(|| "–".to_owned())) }
+            td { (limit.shown_margin().unwrap_or_default()) }
+            td { (bar(limit)) }
+            td.wide.faint { (limit.note.as_deref().unwrap_or_default()) }
         }
     }
 }
@@ -66,11 +56,4 @@ fn bar(limit: &LimitReport) -> Markup {
             line x1="50" x2="50" y1="0" y2="10" {}
         }
     }
-}
-
-/// The dimension of the quantity that a limit names.
-fn dimension(limit: &LimitReport) -> Dimension {
-    let name = limit.text.split_whitespace().next().unwrap_or_default();
-    let quantity = Quantity::ALL.iter().find(|quantity| quantity.name() == name);
-    quantity.map_or(Dimension::One, |quantity| quantity.dimension())
 }

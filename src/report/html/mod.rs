@@ -30,28 +30,36 @@ pub struct Grown<'a> {
 
 /// The whole page.
 pub fn page(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> String {
+    let body = html! {
+        (heading(report))
+        main {
+            (viewer::section(flow, report, grown))
+            (bars::limits(report))
+            (tables::sites(report))
+            (tables::nets(report))
+            (tables::findings(flow, report))
+            (order::section(flow))
+            (cautions(report))
+            (sources(flow, grown))
+        }
+    };
+    document(&report.flow, &body, Some(SCRIPT))
+}
+
+/// A page that needs nothing but itself.
+pub(crate) fn document(title: &str, body: &Markup, script: Option<&str>) -> String {
     let markup = html! {
         (DOCTYPE)
         html lang="en" {
             head {
                 meta charset="utf-8";
                 meta name="viewport" content="width=device-width, initial-scale=1";
-                title { (report.flow) " – gapwright" }
+                title { (title) " – gapwright" }
                 style { (PreEscaped(STYLE)) }
             }
             body {
-                (heading(report))
-                main {
-                    (viewer::section(flow, report, grown))
-                    (tables::sites(report))
-                    (bars::limits(report))
-                    (tables::nets(report))
-                    (tables::findings(flow, report))
-                    (order::section(flow))
-                    (cautions(report))
-                    (sources(flow, grown))
-                }
-                script { (PreEscaped(SCRIPT)) }
+                (body)
+                @if let Some(script) = script { script { (PreEscaped(script)) } }
             }
         }
     };
@@ -59,22 +67,22 @@ pub fn page(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> String {
 }
 
 fn heading(report: &FlowReport) -> Markup {
-    let (class, word) = match report.verdict {
-        Verdict::Pass => ("good", "PASS"),
-        Verdict::Fail => ("bad", "FAIL"),
-        Verdict::Undecided => ("doubtful", "UNDECIDED"),
+    let class = match report.verdict {
+        Verdict::Pass => "good",
+        Verdict::Fail => "bad",
+        Verdict::Undecided => "doubtful",
     };
-    let broken = report.limits.iter().filter(|limit| limit.holds == Some(false)).count();
-    let untold = report.limits.iter().filter(|limit| limit.holds.is_none()).count();
     html! {
         header {
-            p.verdict.(class) role="status" { (word) }
+            p.verdict.(class) role="status" { (report.verdict.word()) }
             h1 { (report.flow) }
             @if let Some(title) = &report.title { p.title { (title) } }
-            p.faint {
-                (report.file) " · " (report.limits.len()) " limits, " (broken) " broken"
-                @if untold > 0 { ", " (untold) " cannot be told" }
-                " · " (report.findings.len()) " findings"
+            p.faint { code { (report.file) } " · " (report.summary()) }
+            @if !report.unjudged_splits().is_empty() {
+                p.faint {
+                    "Splits not judged (" code { "--splits" } " judges them): "
+                    (report.unjudged_splits().join(", "))
+                }
             }
         }
     }

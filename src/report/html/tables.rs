@@ -2,7 +2,6 @@
 
 use maud::{Markup, html};
 
-use crate::diag::Severity;
 use crate::flow::{Dimension, Flow};
 use crate::measure::{Figure, SiteFigures};
 use crate::report::figures::figure;
@@ -14,34 +13,47 @@ fn shown(value: Option<Figure>, dimension: Dimension) -> String {
 
 /// One row a site: what the terminal shows, and more.
 pub(super) fn sites(report: &FlowReport) -> Markup {
+    let split = report.sites.iter().any(|site| site.split.is_some());
+    let names = [
+        "state",
+        "closed by",
+        "void top",
+        "to plane",
+        "share",
+        "roof",
+        "side film",
+        "coupling",
+        "drop",
+        "total",
+        "k eff",
+    ];
     html! {
         section aria-labelledby="spaces" {
             h2 #spaces { "Spaces" }
-            div.scroll {
+            div.scroll tabindex="0" role="region" aria-labelledby="spaces" {
                 table {
                     thead {
                         tr {
-                            @for name in [
-                                "space", "split", "state", "closed by", "void top", "to plane",
-                                "share", "roof", "side film", "coupling", "drop", "total", "k eff",
-                            ] { th scope="col" { (name) } }
+                            th scope="col" { "space" }
+                            @if split { th scope="col" { "split" } }
+                            @for name in names { th scope="col" { (name) } }
                         }
                     }
-                    tbody { @for site in &report.sites { (row(site)) } }
+                    tbody { @for site in &report.sites { (row(site, split)) } }
                 }
             }
         }
     }
 }
 
-fn row(site: &SiteFigures) -> Markup {
+fn row(site: &SiteFigures, split: bool) -> Markup {
     let nm = |value| shown(value, Dimension::Length);
     let per_um = |value| shown(value, Dimension::CapacitancePerLength);
     let electrical = site.electrical.as_ref();
     html! {
         tr {
             th scope="row" { (site.site) }
-            td { (site.split.as_deref().unwrap_or("–")) }
+            @if split { td { (site.split.as_deref().unwrap_or("–")) } }
             td { (site.state.map_or("cannot tell", |state| state.name())) }
             td { (site.sealed_by.as_deref().unwrap_or("–")) }
             td { (nm(site.highest_top_nm())) }
@@ -97,25 +109,25 @@ pub(super) fn findings(flow: &Flow, report: &FlowReport) -> Markup {
 }
 
 fn one(flow: &Flow, finding: &FindingReport) -> Markup {
-    let (class, word) = match (finding.waived, finding.severity) {
-        (true, _) => ("waived", "waived"),
-        (false, Severity::Error) => ("bad", "error"),
-        (false, Severity::Warning) => ("doubtful", "warning"),
-        (false, Severity::Note) => ("note", "note"),
+    let class = match finding.word() {
+        "waived" => "waived",
+        "error" => "bad",
+        "warning" => "doubtful",
+        _ => "note",
     };
-    let line = flow.source.text.lines().nth(finding.line - 1).unwrap_or_default();
+    let count = 1 + finding.end_line.saturating_sub(finding.line);
+    let lines = flow.source.text.lines().enumerate().skip(finding.line - 1).take(count);
     html! {
         article.finding.(class) {
-            h3 {
-                span.word { (word) } " " (finding.rule)
-                @if let Some(step) = &finding.step { " on " (step) }
-                @if let Some(site) = &finding.site { " at " (site) }
-                @if let Some(split) = &finding.split { " in " (split) }
+            div {
+                h3 { span.word { (finding.word()) } " " (finding.title()) }
+                p { (finding.message) }
+                @if let Some(reason) = &finding.waived_because { p { "Waived: " (reason) } }
+                @else if let Some(help) = &finding.help { p.faint { (help) } }
             }
-            p { (finding.message) }
-            @if let Some(reason) = &finding.waived_because { p { "Waived: " (reason) } }
-            @else if let Some(help) = &finding.help { p.faint { (help) } }
-            pre { span.number { (finding.line) } " " (line) }
+            pre {
+                @for (at, line) in lines { span.number { (at + 1) } " " (line.trim()) "\n" }
+            }
         }
     }
 }

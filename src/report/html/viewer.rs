@@ -8,8 +8,11 @@ use super::Grown;
 use crate::flow::Flow;
 use crate::report::FlowReport;
 use crate::report::drawing::{self, Panel};
+use crate::sim::CellTrace;
 
-const WIDTH_PX: f64 = 640.0;
+/// Width of a picture, and of the legend beside it, in pixels.
+const WIDTH_PX: f64 = 560.0;
+const LEGEND_PX: f64 = 320.0;
 
 /// One site of one variant: its pictures in order of steps.
 struct Reel {
@@ -22,45 +25,55 @@ struct Frame {
     picture: usize,
     title: String,
     caption: String,
+    notes: String,
 }
 
-/// The viewer, or nothing when nothing was grown.
+/// The viewer, or nothing when nothing was grown. Without script, and in print, it shows what the
+/// script last showed: at first the finished section of the first site.
 pub(super) fn section(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> Markup {
     let mut pictures = Pictures::default();
     let reels: Vec<_> = grown.iter().flat_map(|g| reels(flow, report, g, &mut pictures)).collect();
-    if reels.is_empty() {
+    let Some((first, last)) = reels.first().and_then(|reel| Some((reel, reel.frames.last()?)))
+    else {
         return html! {};
-    }
+    };
     html! {
         section #viewer aria-labelledby="sections" {
             h2 #sections { "Cross-sections" }
-            div role="group" aria-label="Site" class="sites" {
+            div.sites role="group" aria-label="Site" {
                 @for (at, reel) in reels.iter().enumerate() {
                     button type="button" data-reel=(at) aria-pressed=(at == 0) { (reel.name) }
                 }
             }
-            figure {
-                div #picture {}
-                figcaption {
-                    strong #step-title {} " "
-                    span #step-caption class="faint" {}
+            div.stage {
+                figure {
+                    div #picture { (PreEscaped(&pictures.all[last.picture])) }
+                    figcaption {
+                        strong #step-title { (last.title) } " "
+                        span #step-caption class="faint" { (last.caption) }
+                        p #step-notes { (last.notes) }
+                    }
+                }
+                div.controls {
+                    div.stepping {
+                        button type="button" #back aria-label="Step back" { "◀" }
+                        input #step type="range" min="0" value="0" aria-label="Step";
+                        button type="button" #forward aria-label="Step forward" { "▶" }
+                    }
+                    p.faint.hint { "Left and right step, up and down choose the site." }
+                    ol #steps {}
+                    div #legend { (PreEscaped(&first.legend)) }
                 }
             }
-            div.stepping {
-                button type="button" #back aria-label="Step back" { "◀" }
-                input #step type="range" min="0" value="0" aria-label="Step";
-                button type="button" #forward aria-label="Step forward" { "▶" }
-            }
-            p.faint { "Arrow keys step, digits 1 to 9 choose the site." }
-            div #legend {}
             @for (at, picture) in pictures.all.iter().enumerate() {
                 template id={ "picture-" (at) } { (PreEscaped(picture)) }
             }
             @for (at, reel) in reels.iter().enumerate() {
                 template id={ "legend-" (at) } { (PreEscaped(&reel.legend)) }
-                ol.reel id={ "reel-" (at) } hidden {
+                ol id={ "reel-" (at) } hidden {
                     @for frame in &reel.frames {
-                        li data-picture=(frame.picture) data-caption=(frame.caption) { (frame.title) }
+                        li data-picture=(frame.picture) data-caption=(frame.caption)
+                            data-notes=(frame.notes) { (frame.title) }
                     }
                 }
             }
@@ -88,28 +101,18 @@ impl Pictures {
 
 fn reels(flow: &Flow, report: &FlowReport, grown: &Grown, pictures: &mut Pictures) -> Vec<Reel> {
     let variant = &flow.variants[grown.variant];
-    let split = variant.split.as_ref().map(|split| split.value.as_str());
-    let reel = |cell: &crate::sim::CellTrace| {
-        let labels: Vec<_> = cell.cell.sites.iter().map(|site| site.label()).collect();
-        let of_cell = report
-            .sites
-            .iter()
-            .filter(|s| s.split.as_deref() == split && labels.contains(&s.site.as_str()));
-        let figures: Vec<_> = of_cell.cloned().collect();
-        let panels = drawing::panels(flow, variant, cell, &figures);
-        let frames = drawing::frames(&panels, &flow.library, WIDTH_PX);
+    let reel = |cell: &CellTrace| {
+        let panels = drawing::panels(flow, variant, report, cell);
+        let frames = drawing::frames(&panels, WIDTH_PX);
         let frame = |(panel, picture): (&Panel, String)| Frame {
             picture: pictures.keep(picture),
             title: panel.title.clone(),
             caption: panel.caption.clone(),
-        };
-        let name = match split {
-            Some(split) => format!("{} · {split}", labels.join(", ")),
-            None => labels.join(", "),
+            notes: panel.notes.join("; "),
         };
         Reel {
-            name,
-            legend: drawing::legend_of(&panels, &flow.library, WIDTH_PX),
+            name: drawing::cell_name(variant, cell),
+            legend: drawing::legend_of(&panels, LEGEND_PX),
             frames: panels.iter().zip(frames).map(frame).collect(),
         }
     };

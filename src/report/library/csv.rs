@@ -2,6 +2,7 @@
 
 use super::{Listing, key, number, said};
 use crate::library::{Fact, Told};
+use crate::report::csv::quoted;
 
 /// Columns entry, name, key, value, low, high, unit, source.
 pub fn csv(listing: &Listing<'_>) -> String {
@@ -27,13 +28,5 @@ fn lines(text: &mut String, entry: [&str; 2], facts: &[Fact], source: &str) {
         let cells = [what, name, &key(fact), &said(&fact.told), &low, &high, &unit, source];
         text.push_str(&cells.map(quoted).join(","));
         text.push('\n');
-    }
-}
-
-fn quoted(cell: &str) -> String {
-    if cell.contains([',', '"', '\n', '\r']) {
-        format!("\"{}\"", cell.replace('"', "\"\""))
-    } else {
-        cell.to_owned()
     }
 }

@@ -2,6 +2,7 @@
 
 use super::{Listing, key, range, said};
 use crate::library::{Fact, GENERAL_CAUTION, HAZARDS, Told};
+use crate::report::markdown::cell;
 
 /// One section an entry, cautions at the end.
 pub fn markdown(listing: &Listing<'_>) -> String {
@@ -44,9 +45,4 @@ fn section(text: &mut String, name: &str, label: &str, facts: &[Fact], source: &
         text.push_str(&format!("| {key} | {said} | {range} | {unit} |\n"));
     }
     text.push_str(&format!("\nSource: {}\n\n", cell(source)));
-}
-
-/// Text that cannot end a cell or a line.
-fn cell(text: &str) -> String {
-    text.replace('|', "\\|").replace(['\n', '\r'], " ")
 }

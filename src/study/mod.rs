@@ -1,0 +1,3 @@
+//! Several runs of the same pipeline, set beside each other.
+
+pub mod compare;
