@@ -34,7 +34,11 @@ pub fn equipotentials(
     let roles: Vec<Role> = problem.bodies.iter().map(|body| body.role).collect();
     let section = section::prepare(problem, 1.0)?;
     let roles = zone_roles(problem, &roles)?;
-    let all = outline::triangulate(&section, &[roles.clone()], FIELD_OUTLINE * section.scale)?;
+    let all = outline::triangulate(
+        &section,
+        std::slice::from_ref(&roles),
+        FIELD_OUTLINE * section.scale,
+    )?;
     let domain = Domain::new(&section, &all, &roles, problem.electrodes)?;
     let mut mesh = domain.mesh.clone();
     let mut wanted = Wanted {
