@@ -152,9 +152,7 @@ impl<'a> Chosen<'a> {
         {
             let section = self.field_section()?;
             panel.marks.lines = equipotentials(&section)?;
-            panel.notes.push(
-                "lines of equal potential, 10 % apart; line at 1, all others at 0".to_owned(),
-            );
+            panel.notes.push("potential: the line at 1, all others at 0".to_owned());
         }
         let (columns, width_px) =
             if panels.len() == 1 { (1, ALONE_PX) } else { (COLUMNS, PANEL_PX) };

@@ -16,7 +16,7 @@ use crate::geom::Point;
 use crate::num::tolerance::{FIELD_FLOOR, FIELD_OUTLINE, FIELD_TRIANGLES};
 
 /// Side of the largest triangle over the shorter side of the section.
-const FINENESS: f64 = 0.04;
+const FINENESS: f64 = 0.025;
 
 /// The four first-order triangles of a second-order one, by local nodes.
 const QUARTERS: [[usize; 3]; 4] = [[0, 5, 4], [1, 3, 5], [2, 4, 3], [3, 4, 5]];

@@ -5,7 +5,7 @@
 
 use std::collections::BTreeMap;
 
-use super::canvas::{Anchor, Canvas, FAINT, FIELD, MARK};
+use super::canvas::{Anchor, Canvas, FIELD, INK, MARK};
 use super::palette::fills;
 use crate::geom::{Point, Region};
 use crate::library::{Library, MaterialId};
@@ -39,6 +39,37 @@ pub struct Marks {
     pub lines: Vec<Vec<Point>>,
 }
 
+/// How a line on a section is drawn; the legend names it.
+#[derive(Debug)]
+pub(super) struct LineMark {
+    pub name: &'static str,
+    pub ink: &'static str,
+    pub width: f64,
+    pub dashes: &'static str,
+}
+
+pub(super) const LINE_TOP: LineMark =
+    LineMark { name: "line top", ink: INK, width: 1.0, dashes: "1 3" };
+pub(super) const POLISH_PLANE: LineMark =
+    LineMark { name: "polish plane", ink: MARK, width: 1.2, dashes: "7 3" };
+pub(super) const SEAM: LineMark = LineMark { name: "seam", ink: MARK, width: 0.8, dashes: "2 2" };
+pub(super) const VOID: LineMark =
+    LineMark { name: "void outline", ink: MARK, width: 1.6, dashes: "" };
+pub(super) const POTENTIAL: LineMark =
+    LineMark { name: "equal potential, 10 % apart", ink: FIELD, width: 0.9, dashes: "" };
+
+impl Panel<'_> {
+    /// The lines that are drawn on it.
+    pub(super) fn lines(&self) -> Vec<&'static LineMark> {
+        let mut lines = vec![&LINE_TOP];
+        lines.extend(self.marks.plane_nm.map(|_| &POLISH_PLANE));
+        lines.extend((!self.section.voids.is_empty()).then_some(&VOID));
+        lines.extend((!self.section.seams.is_empty()).then_some(&SEAM));
+        lines.extend((!self.marks.lines.is_empty()).then_some(&POTENTIAL));
+        lines
+    }
+}
+
 /// How much of a section is seen, in nm.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) struct Window {
@@ -69,6 +100,42 @@ impl Window {
 
     pub(super) fn height(&self) -> f64 {
         self.z[1] - self.z[0]
+    }
+
+    /// The stretches of a line that lie in the window (Liang and Barsky, ACM Trans. Graph. 3, 1
+    /// (1984), edge by edge).
+    fn within(&self, line: &[Point]) -> Vec<Vec<Point>> {
+        let mut stretches: Vec<Vec<Point>> = Vec::new();
+        for edge in line.windows(2) {
+            let (from, way) = (edge[0], edge[1] - edge[0]);
+            let mut seen = [0.0_f64, 1.0];
+            let sides = [
+                (-way.x, from.x - self.x[0]),
+                (way.x, self.x[1] - from.x),
+                (-way.z, from.z - self.z[0]),
+                (way.z, self.z[1] - from.z),
+            ];
+            for (outward, room) in sides {
+                if outward < 0.0 {
+                    seen[0] = seen[0].max(room / outward);
+                } else if outward > 0.0 {
+                    seen[1] = seen[1].min(room / outward);
+                } else if room < 0.0 {
+                    seen[1] = -1.0;
+                }
+            }
+            if seen[0] > seen[1] {
+                continue;
+            }
+            let [start, end] = seen.map(|share| from + way * share);
+            match stretches.last_mut() {
+                Some(stretch) if seen[0] == 0.0 && stretch.last() == Some(&start) => {
+                    stretch.push(end)
+                }
+                _ => stretches.push(vec![start, end]),
+            }
+        }
+        stretches
     }
 }
 
@@ -119,15 +186,15 @@ pub(super) fn draw(
         label(canvas, &shown, &library.material(material).name, fills[&material].ink, scale, place);
     }
     for void in &panel.section.voids {
-        canvas.outlined(&pixels(&unfolded(void, panel.section, window)), MARK);
+        canvas.outlined(&pixels(&unfolded(void, panel.section, window)), VOID.ink);
     }
-    for line in &panel.marks.lines {
-        let points: Vec<_> = line.iter().map(|&p| place(p)).collect();
-        canvas.line(&points, FIELD, 0.9, "");
+    for line in panel.marks.lines.iter().flat_map(|line| window.within(line)) {
+        let points: Vec<_> = line.into_iter().map(place).collect();
+        canvas.line(&points, POTENTIAL.ink, POTENTIAL.width, POTENTIAL.dashes);
     }
     for seam in &panel.section.seams {
         let points: Vec<_> = seam.points.iter().map(|&p| place(p)).collect();
-        canvas.line(&points, MARK, 0.8, "2 2");
+        canvas.line(&points, SEAM.ink, SEAM.width, SEAM.dashes);
     }
     marks(canvas, panel, window, place);
 }
@@ -177,7 +244,7 @@ fn label(
     let room = [0.62 * SIZE * name.chars().count() as f64 + 4.0, 1.3 * SIZE];
     let spot = region
         .parts()
-        .filter_map(|part| roomiest(&part, room, scale))
+        .filter_map(|part| Some((roomiest(&part, room, scale)?.0, part.area())))
         .reduce(|a, b| if b.1 > a.1 { b } else { a });
     if let Some((middle, _)) = spot {
         let [x, y] = place(middle);
@@ -219,15 +286,13 @@ fn roomiest(part: &Region, room: [f64; 2], scale: f64) -> Option<(Point, f64)> {
 }
 
 fn marks(canvas: &mut Canvas, panel: &Panel, window: &Window, place: impl Fn(Point) -> [f64; 2]) {
-    let level = |canvas: &mut Canvas, z: f64, ink: &str, dashes: &str, words: &str| {
-        let [left, y] = place(Point::new(window.x[0], z));
-        let [right, _] = place(Point::new(window.x[1], z));
-        canvas.line(&[[left, y], [right, y]], ink, 1.0, dashes);
-        canvas.words([left + 3.0, y - 3.0], 9.0, Anchor::Start, ink, true, words);
+    let mut level = |z: f64, line: &LineMark| {
+        let ends = window.x.map(|x| place(Point::new(x, z)));
+        canvas.line(&ends, line.ink, line.width, line.dashes);
     };
-    level(canvas, panel.section.drawn.line_top, FAINT, "1 3", "line top");
+    level(panel.section.drawn.line_top, &LINE_TOP);
     if let Some(plane) = panel.marks.plane_nm {
-        level(canvas, plane, MARK, "7 3", "polish plane");
+        level(plane, &POLISH_PLANE);
     }
     for (at, number) in &panel.marks.voids {
         canvas.disc(place(*at), 7.0, &number.to_string());

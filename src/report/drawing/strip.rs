@@ -9,6 +9,8 @@ use super::panel::{Panel, Window, draw};
 const MARGIN: f64 = 16.0;
 const TITLE: f64 = 36.0;
 const NOTE_ROW: f64 = 13.0;
+/// Width of a character of a note, generously.
+const NOTE_PX: f64 = 5.4;
 const LEGEND_ROW: f64 = 18.0;
 
 /// One picture of the same size for every section, without words around it: frames to step through.
@@ -28,7 +30,7 @@ pub fn frames(panels: &[Panel], width_px: f64) -> Vec<String> {
 /// The legend of some sections as a picture of its own.
 pub fn legend_of(panels: &[Panel], width_px: f64) -> String {
     let mut canvas = Canvas::default();
-    let height = legend(&mut canvas, &used(panels), [0.0, 4.0], width_px);
+    let height = legend(&mut canvas, panels, [0.0, 4.0], width_px);
     canvas.finish(width_px, height + 4.0, "legend")
 }
 
@@ -50,18 +52,35 @@ pub fn strip(title: &str, panels: &[Panel], columns: usize, width_px: f64) -> St
             canvas.words([x, y + 14.0], 11.0, Anchor::Start, INK, false, &title);
             canvas.words([x, y + 28.0], 9.0, Anchor::Start, FAINT, false, &panel.caption);
             draw(&mut canvas, panel, &window, [x, y + TITLE], scale);
-            for (line, note) in panel.notes.iter().enumerate() {
+            for (line, note) in notes(panel, width_px).iter().enumerate() {
                 let baseline = y + TITLE + size[1] + NOTE_ROW * (line as f64 + 1.0);
                 canvas.words([x, baseline], 9.0, Anchor::Start, INK, false, note);
             }
         }
-        let notes = row.iter().map(|panel| panel.notes.len()).max().unwrap_or(0);
-        y += TITLE + size[1] + NOTE_ROW * notes as f64 + MARGIN;
+        let lines = row.iter().map(|panel| notes(panel, width_px).len()).max().unwrap_or(0);
+        y += TITLE + size[1] + NOTE_ROW * lines as f64 + MARGIN;
     }
     let width = (2.0 * MARGIN + columns as f64 * (size[0] + MARGIN) - MARGIN).max(320.0);
     scale_bar(&mut canvas, [MARGIN, y + 4.0], scale, width_px);
-    let height = legend(&mut canvas, &used(panels), [MARGIN, y + 30.0], width);
+    let height = legend(&mut canvas, panels, [MARGIN, y + 30.0], width);
     canvas.finish(width, y + 30.0 + height + MARGIN, title)
+}
+
+/// The notes of a panel in lines that fit below it, broken after commas.
+fn notes(panel: &Panel, width_px: f64) -> Vec<String> {
+    let fits = (width_px / NOTE_PX) as usize;
+    let mut lines: Vec<String> = Vec::new();
+    for note in &panel.notes {
+        let mut line = String::new();
+        for part in note.split_inclusive(", ") {
+            if !line.is_empty() && line.chars().count() + part.trim_end().chars().count() > fits {
+                lines.push(std::mem::take(&mut line));
+            }
+            line.push_str(part);
+        }
+        lines.push(line);
+    }
+    lines
 }
 
 /// Words that fit in so many characters, the rest told by an ellipsis.
@@ -99,22 +118,31 @@ fn used<'a>(panels: &[Panel<'a>]) -> BTreeMap<&'a str, Fill> {
     used
 }
 
-fn legend(
-    canvas: &mut Canvas,
-    used: &BTreeMap<&str, Fill>,
-    [left, top]: [f64; 2],
-    width: f64,
-) -> f64 {
+/// Materials, then the lines drawn on them; the height that it takes.
+fn legend(canvas: &mut Canvas, panels: &[Panel], [left, top]: [f64; 2], width: f64) -> f64 {
     let [mut x, mut y] = [left, top];
-    for (name, fill) in used {
+    let mut next = |name: &str| {
         let wide = 30.0 + 7.0 * name.chars().count() as f64;
         if x + wide > width - MARGIN && x > left {
             x = left;
             y += LEGEND_ROW;
         }
-        canvas.rectangle([x, y, 14.0, 11.0], fill);
-        canvas.words([x + 19.0, y + 9.5], 10.0, Anchor::Start, INK, false, name);
+        let at = [x, y];
         x += wide;
+        at
+    };
+    for (name, fill) in used(panels) {
+        let [x, y] = next(name);
+        canvas.rectangle([x, y, 14.0, 11.0], &fill);
+        canvas.words([x + 19.0, y + 9.5], 10.0, Anchor::Start, INK, false, name);
+    }
+    let mut lines: Vec<_> = panels.iter().flat_map(Panel::lines).collect();
+    lines.sort_by_key(|line| line.name);
+    lines.dedup_by_key(|line| line.name);
+    for line in lines {
+        let [x, y] = next(line.name);
+        canvas.line(&[[x, y + 5.5], [x + 16.0, y + 5.5]], line.ink, line.width, line.dashes);
+        canvas.words([x + 19.0, y + 9.5], 10.0, Anchor::Start, INK, false, line.name);
     }
     y + LEGEND_ROW - top
 }

@@ -12,9 +12,9 @@ pub(super) fn limits(report: &FlowReport) -> Markup {
         @if !ordered.is_empty() {
             section aria-labelledby="limits" {
                 h2 #limits { "Limits" }
-                div.scroll tabindex="0" role="region" aria-labelledby="limits" {
+                div.scroll tabindex="0" role="group" aria-labelledby="limits" {
                     table {
-                        thead { tr { @for name in ["verdict", "limit", "where", "figure", "margin", "margin of the limit", "note"] { th scope="col" { (name) } } } }
+                        thead { tr { @for name in ["verdict", "limit", "where", "figure", "margin", "of the limit", "note"] { th scope="col" { (name) } } } }
                         tbody { @for limit in &ordered { (row(limit)) } }
                     }
                 }

@@ -121,9 +121,11 @@ fn sources(flow: &Flow, grown: &[Grown]) -> Markup {
             h2 #sources { "Sources" }
             details {
                 summary { "Where the library's numbers come from" }
-                table {
-                    @for (name, source) in &rows {
-                        tr { th scope="row" { (name) } td { (source) } }
+                div.scroll tabindex="0" role="group" aria-labelledby="sources" {
+                    table {
+                        @for (name, source) in &rows {
+                            tr { th scope="row" { (name) } td { (source) } }
+                        }
                     }
                 }
             }

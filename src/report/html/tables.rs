@@ -30,7 +30,7 @@ pub(super) fn sites(report: &FlowReport) -> Markup {
     html! {
         section aria-labelledby="spaces" {
             h2 #spaces { "Spaces" }
-            div.scroll tabindex="0" role="region" aria-labelledby="spaces" {
+            div.scroll tabindex="0" role="group" aria-labelledby="spaces" {
                 table {
                     thead {
                         tr {
@@ -76,7 +76,7 @@ pub(super) fn nets(report: &FlowReport) -> Markup {
         @if !report.nets.is_empty() {
             section aria-labelledby="nets" {
                 h2 #nets { "Nets" }
-                table {
+                div.scroll tabindex="0" role="group" aria-labelledby="nets" { table {
                     thead { tr { @for name in ["net", "split", "delay, neighbours quiet", "along", "against"] { th scope="col" { (name) } } } }
                     tbody {
                         @for net in &report.nets {
@@ -89,7 +89,7 @@ pub(super) fn nets(report: &FlowReport) -> Markup {
                             }
                         }
                     }
-                }
+                } }
             }
         }
     }

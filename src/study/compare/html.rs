@@ -42,7 +42,7 @@ fn section(table: &Table) -> Markup {
     html! {
         section {
             h2 { (table.title) }
-            div.scroll tabindex="0" role="region" aria-label=(table.title) {
+            div.scroll tabindex="0" role="group" aria-label=(table.title) {
                 table {
                     thead { tr { @for name in table.head { th scope="col" { (name) } } } }
                     tbody {

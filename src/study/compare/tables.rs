@@ -53,7 +53,7 @@ fn statements(comparison: &Comparison) -> Table {
             Cell::statement(change.after.as_ref()),
         ]
     });
-    Table { title: "Text", head: &["", "where", "before", "after"], rows: rows.collect() }
+    Table { title: "Text", head: &["edit", "where", "before", "after"], rows: rows.collect() }
 }
 
 fn library(comparison: &Comparison) -> Table {
@@ -115,7 +115,7 @@ fn findings(comparison: &Comparison) -> Table {
             Cell::words(&finding.message),
         ])
     });
-    let head = &["", "severity", "rule", "where", "what"];
+    let head = &["change", "severity", "rule", "where", "what"];
     Table { title: "Findings that came or went", head, rows: rows.collect() }
 }
 
@@ -128,6 +128,6 @@ fn figures(comparison: &Comparison) -> Table {
         row.extend([before, after, difference, relative].map(Cell::Words));
         row
     });
-    let head = &["where", "figure", "before", "after", "change", ""];
+    let head = &["where", "figure", "before", "after", "change", "relative"];
     Table { title: "Figures that changed", head, rows: rows.collect() }
 }
