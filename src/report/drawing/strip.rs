@@ -13,16 +13,17 @@ const NOTE_ROW: f64 = 13.0;
 const NOTE_PX: f64 = 5.4;
 const LEGEND_ROW: f64 = 18.0;
 
-/// One picture of the same size for every section, without words around it: frames to step through.
-pub fn frames(panels: &[Panel], width_px: f64) -> Vec<String> {
+/// One picture of the same size for every section, without words around it: frames to step
+/// through, at most so many pixels wide and high.
+pub fn frames(panels: &[Panel], [width_px, height_px]: [f64; 2]) -> Vec<String> {
     let window = Window::around(panels);
-    let scale = width_px / window.width();
+    let scale = (width_px / window.width()).min(height_px / window.height());
+    let [width, height] = [window.width() * scale, window.height() * scale];
     let frame = |panel: &Panel| {
         let mut canvas = Canvas::default();
         draw(&mut canvas, panel, &window, [0.0, 0.0], scale);
-        let height = window.height() * scale;
-        scale_bar(&mut canvas, [8.0, height - 10.0], scale, width_px);
-        canvas.finish(width_px, height, &panel.title)
+        scale_bar(&mut canvas, [8.0, height - 10.0], scale, width);
+        canvas.finish(width, height, &panel.title)
     };
     panels.iter().map(frame).collect()
 }

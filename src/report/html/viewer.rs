@@ -10,8 +10,8 @@ use crate::report::FlowReport;
 use crate::report::drawing::{self, Panel};
 use crate::sim::CellTrace;
 
-/// Width of a picture, and of the legend beside it, in pixels.
-const WIDTH_PX: f64 = 560.0;
+/// Largest width and height of a picture, and width of the legend beside it, in pixels.
+const PICTURE_PX: [f64; 2] = [640.0, 620.0];
 const LEGEND_PX: f64 = 320.0;
 
 /// One site of one variant: its pictures in order of steps.
@@ -28,8 +28,8 @@ struct Frame {
     notes: String,
 }
 
-/// The viewer, or nothing when nothing was grown. Without script, and in print, it shows what the
-/// script last showed: at first the finished section of the first site.
+/// The viewer, or nothing when nothing was grown. Without script it shows the finished section of the
+/// first site; in print, the finished sections of all.
 pub(super) fn section(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> Markup {
     let mut pictures = Pictures::default();
     let reels: Vec<_> = grown.iter().flat_map(|g| reels(flow, report, g, &mut pictures)).collect();
@@ -62,8 +62,20 @@ pub(super) fn section(flow: &Flow, report: &FlowReport, grown: &[Grown]) -> Mark
                     }
                     p.faint.hint { "Left and right step, up and down choose the site." }
                     ol #steps {}
-                    div #legend { (PreEscaped(&first.legend)) }
+                    div.legend #legend { (PreEscaped(&first.legend)) }
                 }
+            }
+            div.finished {
+                @for reel in &reels {
+                    @if let Some(last) = reel.frames.last() {
+                        figure {
+                            figcaption { strong { (reel.name) } " " (last.caption) }
+                            (PreEscaped(&pictures.all[last.picture]))
+                            p { (last.notes) }
+                        }
+                    }
+                }
+                div.legend { (PreEscaped(&first.legend)) }
             }
             @for (at, picture) in pictures.all.iter().enumerate() {
                 template id={ "picture-" (at) } { (PreEscaped(picture)) }
@@ -103,7 +115,7 @@ fn reels(flow: &Flow, report: &FlowReport, grown: &Grown, pictures: &mut Picture
     let variant = &flow.variants[grown.variant];
     let reel = |cell: &CellTrace| {
         let panels = drawing::panels(flow, variant, report, cell);
-        let frames = drawing::frames(&panels, WIDTH_PX);
+        let frames = drawing::frames(&panels, PICTURE_PX);
         let frame = |(panel, picture): (&Panel, String)| Frame {
             picture: pictures.keep(picture),
             title: panel.title.clone(),

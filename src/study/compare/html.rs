@@ -1,4 +1,4 @@
-//! A comparison as one self-contained page: the sections side by side, then the tables.
+//! A comparison as one self-contained page: the sections that differ side by side, then the tables.
 
 use maud::{Markup, PreEscaped, html};
 
@@ -7,7 +7,9 @@ use super::{Comparison, Sections};
 use crate::report::Verdict;
 use crate::report::html::document;
 
-const WIDTH_PX: f64 = 420.0;
+/// Largest width and height of a picture, and width of a legend, in pixels.
+const PICTURE_PX: [f64; 2] = [520.0, 520.0];
+const LEGEND_PX: f64 = 520.0;
 
 impl Comparison {
     /// The whole page.
@@ -29,9 +31,9 @@ impl Comparison {
                 @if self.is_quiet() {
                     p { "Nothing changed but layout, comments and numerical noise." }
                 }
+                @for sections in sections.iter().filter(|s| s.differ()) { (pictures(sections)) }
                 @for table in tables(self) { (section(&table)) }
                 p.faint { (self.counts()) }
-                @for sections in sections { (pictures(sections)) }
             }
         };
         document(&format!("{}: before and after", self.after.flow), &body, None)
@@ -66,12 +68,13 @@ fn told(cell: &Cell) -> Markup {
 fn pictures(sections: &Sections) -> Markup {
     html! {
         section {
-            h2 { (sections.name) @if !sections.differ() { " (unchanged)" } }
+            h2 { "Section at " (sections.name) }
             div.beside {
-                @for (title, picture) in sections.pictures(WIDTH_PX) {
+                @for (title, picture) in sections.pictures(PICTURE_PX) {
                     figure { figcaption { strong { (title) } } (PreEscaped(picture)) }
                 }
             }
+            div.legend { (PreEscaped(sections.legend(LEGEND_PX))) }
         }
     }
 }

@@ -69,9 +69,14 @@ impl Sections<'_> {
     }
 
     /// Drawn as SVG at one scale, with their titles.
-    pub(super) fn pictures(&self, width_px: f64) -> Vec<(String, String)> {
+    pub(super) fn pictures(&self, size_px: [f64; 2]) -> Vec<(String, String)> {
         let panels = self.panels();
         let titles = panels.iter().map(|panel| panel.title.clone());
-        titles.zip(drawing::frames(&panels, width_px)).collect()
+        titles.zip(drawing::frames(&panels, size_px)).collect()
+    }
+
+    /// The legend of both.
+    pub(super) fn legend(&self, width_px: f64) -> String {
+        drawing::legend_of(&self.panels(), width_px)
     }
 }
