@@ -86,6 +86,7 @@ fn told(stage: &Stage, trace: &CellTrace, variant: &Variant, report: &FlowReport
             figures.split.as_deref() == split && figures.site == site.label()
         };
         for figures in report.sites.iter().filter(of_site) {
+            let first = all.len();
             for (at, void) in figures.voids.iter().enumerate() {
                 let before = figures.voids[..at].iter().filter(|v| v.side == void.side).count();
                 let space = match (site, void.side) {
@@ -94,21 +95,30 @@ fn told(stage: &Stage, trace: &CellTrace, variant: &Variant, report: &FlowReport
                     (Site::Array { .. }, Side::Right | Side::Both) => 1,
                 };
                 let at = inside(&stage.section, space, before);
-                all.push(Told { words: void_words(figures, void), at });
+                all.push(Told { words: void_words(void), at });
+            }
+            // The margin is the site's: that of its highest void.
+            if let (Some(margin), Some(last)) = (figures.polish_margin_nm, all[first..].last_mut())
+            {
+                let of = if figures.voids.len() > 1 {
+                    ", the higher one to plane"
+                } else {
+                    ", to plane"
+                };
+                last.words.push_str(&format!("{of} {}", figure(margin, Dimension::Length)));
             }
         }
     }
     all
 }
 
-fn void_words(site: &SiteFigures, void: &VoidFigures) -> String {
+fn void_words(void: &VoidFigures) -> String {
     let nm = |value| figure(value, Dimension::Length);
     let mut words = vec![
         format!("top {}", nm(void.top_nm)),
         format!("share {}", figure(void.share, Dimension::Share)),
     ];
     words.extend(void.roof_nm.map(|roof| format!("roof {}", nm(roof))));
-    words.extend(site.polish_margin_nm.map(|margin| format!("to plane {}", nm(margin))));
     words.join(", ")
 }
 
