@@ -129,7 +129,7 @@ fn held(flow: &Flow, offered: &Variant) -> String {
         Ok(cells) => cells,
         Err(error) => return format!("It could not be grown: {error}\n"),
     };
-    let context = Context { flow, variant: offered, graph: &graph, cells: &cells, sites: &[] };
+    let context = Context::new(flow, offered, &graph, &cells, &[]);
     let errors: Vec<String> = rules::check(&context)
         .into_iter()
         .filter(|finding| {

@@ -39,14 +39,14 @@ impl Mixture {
     }
 }
 
-/// The series and parallel bounds of every variant, on a (coarse) mesh.
+/// The series and parallel bounds of every variant, on the level of a (coarse) mesh.
 pub(super) fn bounds(
     domain: &Domain,
     mesh: &Mesh,
+    level: &Level,
     variants: &[Vec<Role>],
     electrodes: usize,
 ) -> Result<Vec<Mixture>, FieldError> {
-    let level = Level::new(domain, mesh);
     let vacuum = vec![1.0; mesh.triangles.len()];
     let (primal, dual, bounds) = level.solve(domain, &vacuum, electrodes)?;
     let potential = &primal.fields * &bounds.potentials;

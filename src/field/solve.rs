@@ -66,10 +66,10 @@ pub fn solve_variants(
     if !delaunay::refine(&mut mesh, &mut wanted) {
         return Err(FieldError::MeshTooLarge(FIELD_TRIANGLES));
     }
-    let mixtures = mixture::bounds(&domain, &mesh, &roles, problem.electrodes)?;
+    let mut level = Level::new(&domain, &mesh);
+    let mixtures = mixture::bounds(&domain, &mesh, &level, &roles, problem.electrodes)?;
     let mut round = 0;
     loop {
-        let level = Level::new(&domain, &mesh);
         let mut shares = vec![0.0; mesh.triangles.len()];
         let mut found = Vec::with_capacity(roles.len());
         for roles in &roles {
@@ -112,6 +112,7 @@ pub fn solve_variants(
                 })
                 .collect());
         }
+        level = Level::new(&domain, &mesh);
     }
 }
 

@@ -39,6 +39,24 @@ macro_rules! quantities {
                 match self { $(Self::$variant => $name,)+ }
             }
 
+            /// Whether it comes from the field between electrodes, and so can be asked `between`
+            /// those of one name.
+            pub const fn is_electrical(self) -> bool {
+                use Quantity as Q;
+                matches!(
+                    self,
+                    Q::Coupling
+                        | Q::Ground
+                        | Q::Total
+                        | Q::CouplingDrop
+                        | Q::TotalDrop
+                        | Q::VoidGain
+                        | Q::KEff
+                        | Q::KEffLateral
+                        | Q::CouplingShare
+                )
+            }
+
             /// Its dimension.
             pub const fn dimension(self) -> Dimension {
                 match self { $(Self::$variant => Dimension::$dimension,)+ }

@@ -127,7 +127,7 @@ impl Figures for Measured<'_> {
         Some(match question.quantity {
             Quantity::ClosingSpace => vec![self.lookup(&self.closing_spaces, &key)],
             Quantity::Resistance => vec![self.resistance(&key)],
-            quantity if is_electrical(quantity) => vec![self.field(&key, question)],
+            quantity if quantity.is_electrical() => vec![self.field(&key, question)],
             quantity => geometry.readings(quantity),
         })
     }
@@ -261,7 +261,7 @@ impl Orders {
         let Claim::Bound { quantity, .. } = limit.claim else { return };
         if quantity == Quantity::ClosingSpace {
             self.closing_space.insert(key);
-        } else if is_electrical(quantity) {
+        } else if quantity.is_electrical() {
             let references = self.electrical.entry(key.clone()).or_default();
             match limit.against {
                 Some(Against::Material(material)) => {
@@ -279,39 +279,6 @@ impl Orders {
         let all = self.electrical.keys().chain(&self.closing_space).chain(&self.stages);
         all.cloned().collect()
     }
-}
-
-/// Whether a quantity needs the field around the line.
-fn is_electrical(quantity: Quantity) -> bool {
-    use Quantity as Q;
-    matches!(
-        quantity,
-        Q::Coupling
-            | Q::Ground
-            | Q::Total
-            | Q::CouplingDrop
-            | Q::TotalDrop
-            | Q::VoidGain
-            | Q::KEff
-            | Q::KEffLateral
-            | Q::CouplingShare
-    )
-}
-
-/// All sites of some traced variants at the end of the flow.
-fn all_sites<'a>(flow: &'a Flow, traces: &[Traces<'a>]) -> BTreeMap<Key, Traced<'a>> {
-    let mut all = BTreeMap::new();
-    for traces in traces {
-        let variant = &flow.variants[traces.variant];
-        for (coarse, fine) in traces.coarse.iter().zip(traces.fine) {
-            for at in 0..fine.cell.sites.len() {
-                if let Some(traced) = Traced::new(flow, variant, coarse, fine, at) {
-                    all.insert((traces.variant, traced.site.label().to_owned(), None), traced);
-                }
-            }
-        }
-    }
-    all
 }
 
 #[cfg(test)]

@@ -142,8 +142,7 @@ impl Corners<'_> {
         let variant = &flow.variants[self.variant];
         let graph = Graph::of(flow, variant);
         let sites = measured.site_figures()?;
-        let context =
-            rules::Context { flow, variant, graph: &graph, cells: &cells[0], sites: &sites };
+        let context = rules::Context::new(flow, variant, &graph, &cells[0], &sites);
         let mut margins = Vec::new();
         for site in measured.sites() {
             for &quantity in MARGINS {

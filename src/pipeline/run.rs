@@ -153,7 +153,7 @@ pub fn judge(flow: &Flow, options: &Options, progress: &Progress) -> Result<Judg
         let sites = measured.site_figures()?;
         let graph = Graph::of(flow, variant);
         let cells = &runs[place].fine;
-        let context = rules::Context { flow, variant, graph: &graph, cells, sites: &sites };
+        let context = rules::Context::new(flow, variant, &graph, cells, &sites);
         let limits = verdict::judge(flow, variant, &measured);
         let mut found = rules::check(&context);
         if options.corners {

@@ -23,7 +23,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
     let minimum = findings.threshold("minimum_nm");
     let (pressure_kpa, share) =
         (findings.threshold("pressure_kpa"), findings.threshold("strength_share"));
-    for Roof { cell, space, thickness_nm, width_nm, material, surface_step, .. } in roofs(context) {
+    for &Roof { cell, space, thickness_nm, width_nm, material, surface_step, .. } in roofs(context) {
         let strength = material.map(|id| context.material(id));
         let strength = strength.and_then(|m| findings.want(&m.name, "strength_mpa", m.strength_mpa));
         let stress_mpa = clamped_stress_mpa(1e3 * pressure_kpa, width_nm, thickness_nm);

@@ -28,7 +28,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
             }
             Judged::Left => "open when the flow ends".to_owned(),
         };
-        let lacks = lacks(context, &gap, seal);
+        let lacks = lacks(context, gap, seal);
         let message = format!("the seal does not close the space, which is {met}{lacks}");
         findings.add(
             Found::on_step(context, seal, message)

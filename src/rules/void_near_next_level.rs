@@ -21,7 +21,7 @@ fn check(context: &Context<'_>, findings: &mut Findings<'_>) {
         return;
     }
     let minimum = findings.threshold("minimum_nm");
-    for Roof { cell, space, above_nm, surface_step, .. } in roofs(context) {
+    for &Roof { cell, space, above_nm, surface_step, .. } in roofs(context) {
         if above_nm >= minimum {
             continue;
         }

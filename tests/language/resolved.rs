@@ -241,7 +241,7 @@ fn limits_with_all_their_clauses() {
     let lines = "lines width 32 nm space 32 nm;layer 60 nm polySi as gate;layer 9 nm SiN";
     let rest = "limits\n\
                 coupling-drop>=20% between gate against SiN after 010 at 32nm in 99% of spread\n\
-                hermetic after 010\nvoid-top <= -0.001 um\nk-eff <= 2.2\npeak-temperature <= 673.15 K";
+                hermetic after 010\nvoid-top <= -0.001 um\nk-eff <= 2.2 between gate\npeak-temperature <= 673.15 K";
     let flow = flow(lines, STEPS, rest);
     let limit = &flow.limits[0];
     assert_eq!(

@@ -40,7 +40,7 @@ pub fn findings(flow: &Flow) -> Result<Vec<Finding>, String> {
     let grown = sim::run(flow, variant, &Grain::default().finer(), &|_, _| {});
     let cells = grown.map_err(|error| error.to_string())?;
     let graph = Graph::of(flow, variant);
-    let context = Context { flow, variant, graph: &graph, cells: &cells, sites: &[] };
+    let context = Context::new(flow, variant, &graph, &cells, &[]);
     Ok(rules::finish(flow, &[0], false, rules::check(&context)))
 }
 

@@ -3,7 +3,7 @@
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngAlgorithm, TestRng, TestRunner};
 
-use gapwright::flow::{Flow, Variant};
+use gapwright::flow::{Action, Flow, Variant};
 use gapwright::graph::{Graph, reordered};
 
 use crate::harness::resolve;
@@ -107,21 +107,62 @@ fn moves(order: &[usize]) -> usize {
     order.len() - longest.iter().max().unwrap_or(&0)
 }
 
-/// Independent of the graph's pairing: what no legal order of these flows can break.
+/// Steps of a variant as words: verb, and the material it is about.
+fn words(flow: &Flow, variant: &Variant) -> Vec<String> {
+    let material = |action: &Action| match *action {
+        Action::Deposit { material, .. }
+        | Action::Etch { material, .. }
+        | Action::Convert { from: material, .. } => flow.library.material(material).name.clone(),
+        _ => String::new(),
+    };
+    let word = |action: &Action| format!("{} {}", action.verb(), material(action));
+    variant.steps.iter().map(|step| word(&step.action).trim_end().to_owned()).collect()
+}
+
+/// What no legal order of these flows can break: the needs of the graph, and, independent of how
+/// the graph pairs them, what an engineer would say of the whole order.
 fn is_legal(flow: &Flow, variant: &Variant) -> Result<(), String> {
     let graph = Graph::of(flow, variant);
     if let Some(need) = graph.broken().first() {
         return Err(graph.need_words(need));
     }
-    let verbs: Vec<&str> = variant.steps.iter().map(|step| step.action.verb()).collect();
-    let place = |verb: &str| verbs.iter().position(|v| *v == verb);
-    if place("etch").zip(place("seal")).is_some_and(|(etch, seal)| seal < etch) {
-        return Err("a seal before the first etch".to_owned());
+    let words = words(flow, variant);
+    let first = |word: &str| words.iter().position(|w| w.starts_with(word));
+    let in_order = |early: Option<usize>, late: Option<usize>, wrong: &str| {
+        let broken = early.zip(late).is_some_and(|(early, late)| early > late);
+        if broken { Err(format!("{wrong}: {words:?}")) } else { Ok(()) }
+    };
+    let (etch, seal, release) = (first("etch SiCOH"), first("seal"), first("release"));
+    in_order(etch, seal, "a seal before the first etch")?;
+    in_order(etch, first("convert"), "damage before the etch")?;
+    in_order(first("convert"), first("etch damaged-SiCOH"), "damage gone before it is there")?;
+    in_order(first("etch damaged-SiCOH"), seal, "damage sealed in")?;
+    in_order(etch, first("deposit"), "a liner before the spaces are open")?;
+    in_order(first("deposit"), seal, "a liner over closed spaces")?;
+    in_order(seal, first("polish"), "a polish before the seal")?;
+    in_order(first("cap SiCOH-porous"), release, "a release before its roof")?;
+    in_order(release, first("cap SiN"), "a hermetic cap before the release")?;
+    in_order(seal, first("cap SiN"), "a cap before the seal")?;
+    in_order(seal.or(release), first("via"), "a via before its level is closed")?;
+    if let (Some(etch), Some(seal)) = (etch, seal)
+        && words[etch..seal].iter().any(|word| word.starts_with("clean"))
+    {
+        return Err(format!("a liquid in open spaces: {words:?}"));
     }
-    if let (Some(mask), Some(strip)) = (place("mask"), place("strip")) {
-        let limited = verbs.get(mask..strip).unwrap_or_default();
-        if !limited.iter().any(|verb| matches!(*verb, "etch" | "convert")) {
-            return Err("a mask that limits nothing".to_owned());
+    let film = |word: &String| ["deposit", "seal", "cap"].iter().any(|v| word.starts_with(v));
+    if let Some(via) = first("via")
+        && !words[via..].iter().any(film)
+    {
+        return Err(format!("the via's metal stays bare: {words:?}"));
+    }
+    if let (Some(mask), Some(strip)) = (first("mask"), first("strip")) {
+        let limited = words.get(mask..strip).unwrap_or_default();
+        let limits = |word: &String| word.starts_with("etch") || word.starts_with("convert");
+        if !limited.iter().any(limits) {
+            return Err(format!("a mask that limits nothing: {words:?}"));
+        }
+        if limited.iter().any(film) {
+            return Err(format!("a buried mask: {words:?}"));
         }
     }
     Ok(())
@@ -151,6 +192,12 @@ fn two_hundred_shuffled_flows_are_put_right() {
             "{} moved, the shuffle {}: {shuffle:?} of\n{text}",
             proposal.moved.len(),
             moves(&shuffle)
+        );
+        prop_assert_eq!(
+            moves(&proposal.order),
+            proposal.moved.len(),
+            "what is said to have moved is not what did: {:?}",
+            proposal
         );
         let offered = reordered(&shuffled, &proposal.order);
         let legality = is_legal(&flow, &offered);

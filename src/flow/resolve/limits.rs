@@ -180,7 +180,7 @@ impl Resolver<'_, '_, '_> {
 
     /// Each clause needs a claim that it can say something about.
     fn check_clauses(&mut self, statement: &LimitStatement, claim: Claim) -> Option<()> {
-        use Quantity::{Coupling, CouplingDrop, Delay, PeakTemperature, Total, TotalDrop};
+        use Quantity::{CouplingDrop, Delay, PeakTemperature, TotalDrop};
         let quantity = match claim {
             Claim::State(_) => None,
             Claim::Bound { quantity, .. } => Some(quantity),
@@ -194,10 +194,10 @@ impl Resolver<'_, '_, '_> {
             Some((span, "at", "it is not of one space"))
         } else if let Some(span) = span(&statement.for_net).filter(|_| quantity != Some(Delay)) {
             Some((span, "for", "only `delay` is of a net"))
-        } else if let Some(span) = span(&statement.between)
-            .filter(|_| !matches!(quantity, Some(Coupling | Total | CouplingDrop | TotalDrop)))
+        } else if let Some(span) =
+            span(&statement.between).filter(|_| !quantity.is_some_and(Quantity::is_electrical))
         {
-            Some((span, "between", "it stands on `coupling`, `total` and their drops"))
+            Some((span, "between", "it stands on what the field between electrodes gives"))
         } else {
             span(&statement.against)
                 .filter(|_| !matches!(quantity, Some(CouplingDrop | TotalDrop)))

@@ -1,5 +1,11 @@
 //! What a check is given, and the ways through it that most checks take.
 
+use std::cell::OnceCell;
+
+use super::gaps::OpenGap;
+use super::metal::BareContact;
+use super::roofs::Roof;
+use super::ways::Kept;
 use crate::flow::{Action, Claim, Flow, Site, State, Step, Variant};
 use crate::graph::Graph;
 use crate::library::{Ambient, Material, MaterialId, Process};
@@ -11,7 +17,6 @@ use crate::sim::{CellTrace, Exposure, Stage};
 pub const LEAST_EXPOSED_NM: f64 = 1.0;
 
 /// One judged variant with everything that is known of it.
-#[derive(Clone, Copy)]
 pub struct Context<'a> {
     /// The flow.
     pub flow: &'a Flow,
@@ -23,6 +28,17 @@ pub struct Context<'a> {
     pub cells: &'a [CellTrace],
     /// Its figures.
     pub sites: &'a [SiteFigures],
+    /// What several rules ask of the sections, found once.
+    pub(super) shared: Shared<'a>,
+}
+
+/// What several rules ask of the sections, found when the first of them asks.
+#[derive(Default)]
+pub(super) struct Shared<'a> {
+    pub bare_contacts: OnceCell<Vec<BareContact<'a>>>,
+    pub kept: OnceCell<Vec<Kept<'a>>>,
+    pub open_gaps: OnceCell<Vec<OpenGap<'a>>>,
+    pub roofs: OnceCell<Vec<Roof<'a>>>,
 }
 
 /// One step in one cell: what was there before and after.
@@ -73,6 +89,17 @@ impl<'a> Moment<'a> {
 }
 
 impl<'a> Context<'a> {
+    /// A variant with its graph, its cells and its figures.
+    pub fn new(
+        flow: &'a Flow,
+        variant: &'a Variant,
+        graph: &'a Graph,
+        cells: &'a [CellTrace],
+        sites: &'a [SiteFigures],
+    ) -> Self {
+        Self { flow, variant, graph, cells, sites, shared: Shared::default() }
+    }
+
     /// The material of an id.
     pub fn material(&self, id: MaterialId) -> &'a Material {
         self.flow.library.material(id)

@@ -31,7 +31,11 @@ pub struct OpenGap<'a> {
 
 /// Every opening of every space that is met open, each once, where it is first met; spaces
 /// that a limit allows to be open are left out.
-pub fn open_gaps<'a>(context: &Context<'a>) -> Vec<OpenGap<'a>> {
+pub fn open_gaps<'c, 'a>(context: &'c Context<'a>) -> &'c [OpenGap<'a>] {
+    context.shared.open_gaps.get_or_init(|| find_open_gaps(context))
+}
+
+fn find_open_gaps<'a>(context: &Context<'a>) -> Vec<OpenGap<'a>> {
     let mut gaps = Vec::new();
     for cell in context.cells {
         for space in 0..cell.stages[0].states.len() {

@@ -36,7 +36,11 @@ pub fn drifts(context: &Context<'_>, body: &Body) -> bool {
 
 /// Contacts of drifting metals with dielectrics and semiconductors that are no barrier, at the
 /// first stage that has them.
-pub fn bare_contacts<'a>(context: &Context<'a>) -> Vec<BareContact<'a>> {
+pub fn bare_contacts<'c, 'a>(context: &'c Context<'a>) -> &'c [BareContact<'a>] {
+    context.shared.bare_contacts.get_or_init(|| find_bare_contacts(context))
+}
+
+fn find_bare_contacts<'a>(context: &Context<'a>) -> Vec<BareContact<'a>> {
     let mut all: Vec<BareContact<'a>> = Vec::new();
     let present = |cell: &CellTrace| {
         cell.stages.iter().any(|s| s.section.bodies.iter().any(|b| drifts(context, b)))

@@ -26,7 +26,11 @@ pub struct Roof<'a> {
 }
 
 /// The roofs of all voids.
-pub fn roofs<'a>(context: &Context<'a>) -> Vec<Roof<'a>> {
+pub fn roofs<'c, 'a>(context: &'c Context<'a>) -> &'c [Roof<'a>] {
+    context.shared.roofs.get_or_init(|| find_roofs(context))
+}
+
+fn find_roofs<'a>(context: &Context<'a>) -> Vec<Roof<'a>> {
     let mut all = Vec::new();
     for cell in context.cells {
         let section = &cell.stages[cell.stages.len() - 1].section;

@@ -60,7 +60,11 @@ pub struct Kept<'a> {
 }
 
 /// Regions that releases left behind, with what is in their way.
-pub fn kept<'a>(context: &Context<'a>) -> Vec<Kept<'a>> {
+pub fn kept<'c, 'a>(context: &'c Context<'a>) -> &'c [Kept<'a>] {
+    context.shared.kept.get_or_init(|| find_kept(context))
+}
+
+fn find_kept<'a>(context: &Context<'a>) -> Vec<Kept<'a>> {
     let mut all = Vec::new();
     for moment in context.moments() {
         let Action::Release { material, .. } = moment.step.action else { continue };
