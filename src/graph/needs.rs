@@ -222,7 +222,34 @@ impl<'a> Reader<'a> {
             }
         } else if let Some(seal) = self.last(0, at, |p| self.seals(p)) {
             self.add(needs, seal, at, reason, why);
+        } else if self.stays_over_spaces(at)
+            && let Some(opener) = self.next(at, |p| self.etches_spaces(p))
+            && let Some(seal) = self.next(opener, |p| self.seals(p))
+        {
+            self.add(needs, seal, at, reason, "spaces are opened and closed under it".into());
         }
+    }
+
+    /// Whether what a step leaves lies over spaces for good: a via, or a cap that no later step
+    /// opens.
+    fn stays_over_spaces(&self, at: usize) -> bool {
+        match *self.action(at) {
+            Action::Via { .. } => true,
+            Action::Deposit { role: Role::Cap, material, .. } => self
+                .next(at, |p| match *self.action(p) {
+                    Action::Etch { material: m, .. }
+                    | Action::EtchUntil { material: m, .. }
+                    | Action::Strip { material: m, .. } => m == material,
+                    _ => false,
+                })
+                .is_none(),
+            _ => false,
+        }
+    }
+
+    /// Whether a step empties spaces from above; a release does it under a roof.
+    fn etches_spaces(&self, at: usize) -> bool {
+        self.opens(at) && !matches!(self.action(at), Action::Release { .. })
     }
 
     /// A liquid must not find a space open: before it opens, or after it is closed.

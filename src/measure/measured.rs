@@ -281,6 +281,22 @@ impl Orders {
     }
 }
 
+/// All sites of some traced variants at the end of the flow.
+fn all_sites<'a>(flow: &'a Flow, traces: &[Traces<'a>]) -> BTreeMap<Key, Traced<'a>> {
+    let mut all = BTreeMap::new();
+    for traces in traces {
+        let variant = &flow.variants[traces.variant];
+        for (coarse, fine) in traces.coarse.iter().zip(traces.fine) {
+            for at in 0..fine.cell.sites.len() {
+                if let Some(traced) = Traced::new(flow, variant, coarse, fine, at) {
+                    all.insert((traces.variant, traced.site.label().to_owned(), None), traced);
+                }
+            }
+        }
+    }
+    all
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -87,6 +87,13 @@ impl Corners<'_> {
         for limit in limits {
             broken.margin(limit, &nominal, &ends);
         }
+        for (at, both) in ends.iter().enumerate() {
+            for (part, view) in both {
+                let mut point = vec![0.0; tolerances.len()];
+                point[at] = *part;
+                broken.states(&nominal, Some(view), &point);
+            }
+        }
         let states = Flow {
             limits: self.flow.limits.iter().filter(|l| is_state(&l.claim)).cloned().collect(),
             ..self.flow.clone()
@@ -95,13 +102,6 @@ impl Corners<'_> {
             let seen = self.at(&tolerances, &point, states.clone())?;
             let seen = broken.judge(seen, &point);
             broken.states(&nominal, seen.as_ref(), &point);
-        }
-        for (at, both) in ends.iter().enumerate() {
-            for (part, view) in both {
-                let mut point = vec![0.0; tolerances.len()];
-                point[at] = *part;
-                broken.states(&nominal, Some(view), &point);
-            }
         }
         Ok(broken.all)
     }

@@ -53,11 +53,19 @@ struct Round {
 /// The best of a few runs, in ms.
 fn time_ms(problem: &Problem, accuracy: f64) -> f64 {
     let run = |_| {
-        let start = Instant::now();
+        let (wall, cpu) = (Instant::now(), cpu_ns());
         solve(problem, accuracy).expect("a reference section can be solved");
-        start.elapsed().as_secs_f64() * 1e3
+        let spent = cpu_ns().zip(cpu).map(|(after, before)| (after - before) as f64 * 1e-6);
+        spent.unwrap_or(wall.elapsed().as_secs_f64() * 1e3)
     };
     (0..9).map(run).fold(f64::INFINITY, f64::min)
+}
+
+/// What this thread has had of a processor, in ns, where the kernel tells (proc(5), schedstat):
+/// on a shared machine the clock on the wall counts others too.
+fn cpu_ns() -> Option<u64> {
+    let told = std::fs::read_to_string("/proc/thread-self/schedstat").ok()?;
+    told.split_whitespace().next()?.parse().ok()
 }
 
 /// Error of the worst entry.

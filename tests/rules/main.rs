@@ -9,6 +9,7 @@
     reason = "tests read files and time nothing"
 )]
 
+mod corners;
 mod harness;
 mod legitimate;
 mod mistakes;
