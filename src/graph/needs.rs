@@ -74,12 +74,18 @@ impl<'a> Reader<'a> {
                 self.barrier(at, material, needs);
             }
             Action::Fill { material, .. } => self.barrier(at, material, needs),
-            Action::Etch { material, .. } | Action::Strip { material, .. } => {
+            Action::Etch { material, .. } => {
                 self.material(at, material, needs);
+                self.opens_before_the_seal(at, material, needs);
             }
-            Action::Convert { from, .. } => self.material(at, from, needs),
+            Action::Strip { material, .. } => self.material(at, material, needs),
+            Action::Convert { from, .. } => {
+                self.material(at, from, needs);
+                self.unburied(at, from, needs);
+            }
             Action::EtchUntil { material, stop, .. } => {
                 self.material(at, material, needs);
+                self.opens_before_the_seal(at, material, needs);
                 self.stop(at, stop, needs);
             }
             Action::Mask { material, .. } => self.mask(at, material, needs),
@@ -300,6 +306,30 @@ impl<'a> Reader<'a> {
         if let Some(from) = self.bringer(at, material) {
             let why = format!("needs the {} that it takes away", self.name(material));
             self.add(needs, from, at, Reason::Fills, why);
+            // What a conversion left in the spaces goes before they are closed.
+            let converted = matches!(self.action(from), Action::Convert { .. });
+            let buries = (from + 1..at).find(|&p| converted && self.seals(p));
+            if let Some(seal) = buries {
+                let why = format!("would seal {} in", self.name(material));
+                self.add(needs, at, seal, Reason::Opens, why);
+            }
+        }
+    }
+
+    /// An etch of what fills the spaces comes before a seal buries it, where no other closes them.
+    fn opens_before_the_seal(&self, at: usize, material: MaterialId, needs: &mut Needs) {
+        let closes = |p: usize| self.seals(p) || matches!(self.action(p), Action::Fill { .. });
+        if self.opens(at) && self.next(at, closes).is_none() {
+            self.unburied(at, material, needs);
+        }
+    }
+
+    /// What fills the spaces is changed before a seal buries it; a polish may bare it again.
+    fn unburied(&self, at: usize, material: MaterialId, needs: &mut Needs) {
+        let sealed = self.last(0, at, |p| self.seals(p) || self.reaches_lines(p));
+        if let Some(seal) = sealed.filter(|&p| self.seals(p) && self.in_spaces(material)) {
+            let why = format!("would bury {}", self.name(material));
+            self.add(needs, at, seal, Reason::Opens, why);
         }
     }
 
@@ -339,9 +369,8 @@ impl<'a> Reader<'a> {
             }
         }
         if let Some(strip) = strip {
-            let film = self.next(at, |p| self.adds(p));
-            let why = "would bury the mask".to_owned();
-            if let Some(film) = film.filter(|&film| film != strip) {
+            for film in (at + 1..self.order.len()).filter(|&p| self.adds(p)) {
+                let why = "would bury the mask".to_owned();
                 self.add(needs, strip, film, Reason::Protects, why);
             }
         }
@@ -416,16 +445,42 @@ impl<'a> Reader<'a> {
         {
             self.add(needs, film, at, Reason::Covers, why);
         }
+        if previous.is_none() {
+            self.reaches_plane(at, needs);
+        }
         self.closed_space(at, Reason::Covers, needs);
         if let Some(metal) = self.bared_metal(at) {
             self.cover_after(at, metal, "the metal that the polish bares", needs);
         }
     }
 
-    /// The drifting metal of the lines, where the plane lies at the line top or below.
-    fn bared_metal(&self, at: usize) -> Option<MaterialId> {
+    /// A plane above the lines needs films that reach it.
+    fn reaches_plane(&self, at: usize, needs: &mut Needs) {
+        let Action::Polish { to: Height { offset, place: Place::Lines }, .. } = self.action(at)
+        else {
+            return;
+        };
+        let thickness = |p: usize| match *self.action(p) {
+            Action::Deposit { thickness, .. } => thickness.nominal.nm(),
+            Action::Fill { .. } => f64::INFINITY,
+            _ => 0.0,
+        };
+        let over = self.variant.wafer.over.iter().map(|film| film.thickness.nominal.nm());
+        let mut height: f64 = over.sum::<f64>() + (0..at).map(thickness).sum::<f64>();
+        for film in (at + 1..self.order.len()).filter(|&p| self.adds(p)) {
+            if height > offset.nominal.nm() {
+                break;
+            }
+            height += thickness(film);
+            let why = "reaches its plane only with it".to_owned();
+            self.add(needs, film, at, Reason::Covers, why);
+        }
+    }
+
+    /// Whether a polish goes down to the line top or below.
+    fn reaches_lines(&self, at: usize) -> bool {
         let wafer = &self.variant.wafer;
-        let reaches_lines = match self.action(at) {
+        match self.action(at) {
             Action::Polish { to: Height { offset, place }, .. } => {
                 *place != Place::Lines || offset.nominal.nm() <= 0.0
             }
@@ -434,9 +489,13 @@ impl<'a> Reader<'a> {
                 of_lines.chain(wafer.liner.iter().map(|liner| liner.material)).any(|m| m == *stop)
             }
             _ => false,
-        };
-        let top = wafer.layers.last().map(|layer| layer.material);
-        top.filter(|&top| reaches_lines && self.library.material(top).needs_barrier)
+        }
+    }
+
+    /// The drifting metal of the lines, where the plane lies at the line top or below.
+    fn bared_metal(&self, at: usize) -> Option<MaterialId> {
+        let top = self.variant.wafer.layers.last().map(|layer| layer.material);
+        top.filter(|&top| self.reaches_lines(at) && self.library.material(top).needs_barrier)
     }
 
     /// Bare metal needs the next film: the film comes after what bares it.

@@ -28,7 +28,8 @@ waivers
 
 fn check(arguments: &[&str]) -> (i32, String) {
     let mut command = Command::cargo_bin("gapwright").unwrap();
-    let run = command.arg("check").args(arguments).arg("-").write_stdin(FLOW).output().unwrap();
+    let run = command.args(["check", "--accuracy", "10 %"]).args(arguments).arg("-");
+    let run = run.write_stdin(FLOW).output().unwrap();
     let text = String::from_utf8(run.stdout).unwrap();
     let findings = text.split("  findings\n").nth(1).unwrap_or_default();
     let findings = findings.split("\n  cautions").next().unwrap_or_default();
@@ -39,7 +40,16 @@ fn check(arguments: &[&str]) -> (i32, String) {
 fn what_holds_at_nominal_values_breaks_at_their_corners() {
     let (status, findings) = check(&["--corners"]);
     assert_eq!(status, 0, "{findings}");
-    insta::assert_snapshot!("corners", findings);
+    for told in [
+        "warning  corner-fails on 030 at 40 nm",
+        "space-not-sealed at 030 seal thickness − 60 nm: the seal does not close the space",
+        "polish-opens-void at 040 polish height − 20 nm: the plane passes",
+        "waived: the lot is held at the polish",
+        "% of it 030 seal thickness ± 60 nm",
+        "`sealed after 030` breaks at 030 seal thickness − 60 nm\n",
+    ] {
+        assert!(findings.contains(told), "{told}:\n{findings}");
+    }
     assert_eq!(check(&["--corners", "--deny", "warnings"]).0, 1);
 }
 

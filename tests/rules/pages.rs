@@ -25,7 +25,8 @@ fn said(name: &str, text: &str, library: Option<&str>) -> Result<Vec<Said>, Stri
         let found = findings(&flow).map_err(|error| format!("{name}: {error}"))?;
         return Ok(found.iter().map(|f| (f.rule.into(), f.severity, line(&flow, f))).collect());
     }
-    let options = Options { corners: true, ..Options::default() };
+    // Corners are grown at the coarser resolution whatever the accuracy.
+    let options = Options { corners: true, accuracy: 0.1, ..Options::default() };
     let judged = judge(&flow, &options, &|_, _| ()).map_err(|error| format!("{name}: {error}"))?;
     let found = judged.report.findings.into_iter();
     Ok(found.map(|f| (f.rule, f.severity, f.message)).collect())

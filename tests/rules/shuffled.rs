@@ -134,18 +134,15 @@ fn is_legal(flow: &Flow, variant: &Variant) -> Result<(), String> {
     };
     let (etch, seal, release) = (first("etch SiCOH"), first("seal"), first("release"));
     in_order(etch, seal, "a seal before the first etch")?;
-    in_order(etch, first("convert"), "damage before the etch")?;
     in_order(first("convert"), first("etch damaged-SiCOH"), "damage gone before it is there")?;
     in_order(first("etch damaged-SiCOH"), seal, "damage sealed in")?;
-    in_order(etch, first("deposit"), "a liner before the spaces are open")?;
-    in_order(first("deposit"), seal, "a liner over closed spaces")?;
     in_order(seal, first("polish"), "a polish before the seal")?;
     if variant.wafer.over.is_empty() {
         in_order(first("cap SiCOH-porous"), release, "a release before its roof")?;
     }
     in_order(release, first("cap SiN"), "a hermetic cap before the release")?;
     in_order(seal, first("cap SiN"), "a cap before the seal")?;
-    in_order(seal.or(release), first("via"), "a via before its level is closed")?;
+    in_order(seal, first("via"), "a via before its level is closed")?;
     if let (Some(etch), Some(seal)) = (etch, seal)
         && words[etch..seal].iter().any(|word| word.starts_with("clean"))
     {
