@@ -7,6 +7,7 @@ use std::process::Command;
 use gapwright::study::compare::{self, Change, Comparison, Judged, Sections};
 use serde_json::Value;
 
+use super::hand;
 use super::small::{Small, small, thicker};
 
 fn side(small: &'static Small, name: &'static str) -> Judged<'static> {
@@ -25,6 +26,26 @@ fn a_flow_against_itself_is_quiet() {
     assert!(comparison.statements.is_empty() && comparison.library.is_empty());
     assert!(comparison.figures.iter().all(|figure| figure.change == Change::Same));
     assert!(comparison.markdown(&[]).contains("Nothing changed"));
+}
+
+/// The texts of two real flows, the figures of two reports made by hand.
+fn by_hand() -> Comparison {
+    let (old, new) = (hand::report(), hand::changed());
+    let side = |small: &'static Small, name, report| Judged { name, flow: &small.flow, report };
+    compare::compare(
+        side(small(), "a.flow at HEAD~1", &old.runs[0]),
+        side(thicker(), "a.flow", &new.runs[0]),
+    )
+}
+
+#[test]
+fn markdown() {
+    insta::assert_snapshot!(by_hand().markdown(&[]));
+}
+
+#[test]
+fn text() {
+    insta::assert_snapshot!(by_hand().text(&[], false));
 }
 
 #[test]
@@ -130,6 +151,31 @@ fn a_history_of_two_commits_is_read_without_checking_anything_out() {
     assert_eq!((&library[0]["before"], &library[0]["after"]), (&"10".into(), &"5".into()));
     assert_eq!(repository.git(&["status", "--porcelain"]), "");
     assert_eq!(fs::read_to_string(repository.path().join("flows/a.flow")).unwrap(), new);
+}
+
+/// The script of docs/review.md, on a change of a flow.
+#[test]
+fn the_documented_script_leaves_what_it_says() {
+    let page = include_str!("../../docs/review.md");
+    let script = page.split("```sh\n").nth(1).unwrap().split("```").next().unwrap();
+    let repository = Repository::new();
+    let plain = super::small::TEXT.split("splits").next().unwrap();
+    repository.commit(&[("a.flow", plain)]);
+    repository.commit(&[("a.flow", &plain.replace("2 nm SiN", "3 nm SiN"))]);
+    let folder = Path::new(env!("CARGO_BIN_EXE_gapwright")).parent().unwrap();
+    let path = format!("{}:{}", folder.display(), std::env::var("PATH").unwrap());
+    let output = Command::new("sh")
+        .args(["-c", script])
+        .current_dir(repository.path())
+        .envs([("BASE", "HEAD~1"), ("PATH", &path)])
+        .output()
+        .unwrap();
+    let said = String::from_utf8_lossy(&output.stderr);
+    assert!(matches!(output.status.code(), Some(0 | 1)), "{said}");
+    let left = |name: &str| fs::read_to_string(repository.path().join("reports").join(name));
+    assert!(left("a.sarif").unwrap().contains("\"version\": \"2.1.0\""), "{said}");
+    assert!(left("a.html").unwrap().starts_with("<!DOCTYPE html>"));
+    assert!(left("comment.md").unwrap().contains("| changed | steps 010 |"));
 }
 
 #[test]

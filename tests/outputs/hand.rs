@@ -86,6 +86,21 @@ pub fn site(name: &str, split: Option<&str>) -> SiteFigures {
     }
 }
 
+/// The same after a change: less void, one limit flipped, one finding gone, one waived since.
+pub fn changed() -> Report {
+    let mut report = report();
+    let run = &mut report.runs[0];
+    run.findings.remove(1);
+    run.findings[0].waived = true;
+    let void = &mut run.sites[0].voids[0];
+    void.share = Figure::within(0.621, 0.002);
+    void.top_nm = Figure::within(27.9, 0.6);
+    run.limits[1].holds = Some(true);
+    run.limits[1].value = Some(Figure::within(0.621, 0.002));
+    run.verdict = Verdict::Pass;
+    report
+}
+
 /// One flow of which nearly everything can be said.
 pub fn report() -> Report {
     let mut broken = limit("void-share >= 60 % at 32 nm", 20, Some(false));

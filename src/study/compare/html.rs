@@ -32,6 +32,9 @@ impl Comparison {
                     p { "Nothing changed but layout, comments and numerical noise." }
                 }
                 @for sections in sections.iter().filter(|s| s.differ()) { (pictures(sections)) }
+                @let same: Vec<&str> =
+                    sections.iter().filter(|s| !s.differ()).map(|s| s.name.as_str()).collect();
+                @if !same.is_empty() { p.faint { "The same section: " (same.join("; ")) } }
                 @for table in tables(self) { (section(&table)) }
                 p.faint { (self.counts()) }
             }

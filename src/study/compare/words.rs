@@ -109,18 +109,17 @@ impl Comparison {
     /// How many figures changed, differ within their error, and are the same.
     pub(super) fn counts(&self) -> String {
         let count = |change| self.figures.iter().filter(|f| f.change == change).count();
-        let mut parts = vec![
-            format!("{} changed", count(Change::Changed)),
-            format!("{} differ within the numerical error", count(Change::WithinError)),
-            format!("{} are the same", count(Change::Same)),
+        let all = [
+            (Change::Changed, "changed"),
+            (Change::WithinError, "within the numerical error"),
+            (Change::Same, "the same"),
+            (Change::New, "new"),
+            (Change::Gone, "gone"),
         ];
-        for (change, word) in [(Change::New, "new"), (Change::Gone, "gone")] {
-            let count = count(change);
-            if count > 0 {
-                parts.push(format!("{count} {word}"));
-            }
-        }
-        format!("Of {} figures {}.", self.figures.len(), parts.join(", "))
+        let told = all.into_iter().map(|(change, word)| (count(change), word));
+        let told = told.filter(|(count, _)| *count > 0).map(|(n, word)| format!("{n} {word}"));
+        let told: Vec<_> = told.collect();
+        format!("{} figures: {}.", self.figures.len(), told.join(", "))
     }
 
     /// `PASS`, or `PASS → FAIL`.
