@@ -54,6 +54,8 @@ impl<'a> CapacitanceReport<'a> {
         let cell = |i: usize, j: usize| {
             let value = self.matrix_af_per_um.values[i][j];
             let half = 0.5 * (self.matrix_af_per_um.high[i][j] - self.matrix_af_per_um.low[i][j]);
+            // What rounds to nothing has no sign.
+            let value = if value.abs() < 5e-4 { 0.0 } else { value };
             format!("{value:.3} ± {half:.3}")
         };
         let n = self.electrodes.len();
