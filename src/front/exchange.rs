@@ -11,7 +11,7 @@
 
 use super::FrontError;
 use super::outline::Facet;
-use super::visibility::{Scenery, Seen, gaps};
+use super::visibility::{Scenery, Seen, Views, gaps};
 use crate::num::tolerance::EXCHANGE_RESIDUAL;
 use std::f64::consts::FRAC_PI_2;
 
@@ -36,10 +36,10 @@ impl Exchange {
     pub fn between(facets: &[Facet], walls: [f64; 2]) -> Self {
         let scenery = Scenery::unfold(facets, walls);
         let mut exchange = Self::default();
-        let mut seen = Vec::new();
+        let mut views = Views::new();
         for (index, facet) in facets.iter().enumerate() {
-            scenery.look(index, facet.middle(), facet.normal, &mut seen);
-            exchange.push_row(normal_angle(facet), &seen);
+            let seen = scenery.look(index, facet.middle(), facet.normal, &mut views);
+            exchange.push_row(normal_angle(facet), seen);
         }
         exchange
     }

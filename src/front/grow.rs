@@ -70,6 +70,7 @@ struct Run<'a> {
     last_step: f64,
     closures: Vec<Closure>,
     tracks: Vec<Track>,
+    count: usize,
 }
 
 impl<'a> Run<'a> {
@@ -106,6 +107,7 @@ impl<'a> Run<'a> {
             last_step: 0.0,
             closures: Vec::new(),
             tracks: Vec::new(),
+            count: 0,
         })
     }
 
@@ -123,6 +125,7 @@ impl<'a> Run<'a> {
                 let facets = self.surface.len();
                 return Err(FrontError::TooFine { facets, limit: MOST_FACETS });
             }
+            self.count += self.surface.len();
             let before = self.solve_rates()?;
             self.step(thickness - self.grown, &before);
             self.close_throats()?;
@@ -134,7 +137,7 @@ impl<'a> Run<'a> {
                 goes_on
             });
         }
-        self.finish()
+        self.finish(steps)
     }
 
     /// Solves the flux; what each piece had before is returned.
@@ -250,7 +253,8 @@ impl<'a> Run<'a> {
         Err(FrontError::Inconsistent("a throat does not stay closed"))
     }
 
-    fn finish(self) -> Result<Growth, FrontError> {
+    fn finish(self, steps: usize) -> Result<Growth, FrontError> {
+        if std::env::var("GW").is_ok() { eprintln!("steps {steps} n {}", self.count / steps.max(1)); }
         let sky = self.surface.top().max(self.start.top()) + SKY_MARGIN_NM;
         let between = self.start.ambient(sky)?.difference(&self.surface.ambient(sky)?);
         let voids = Region::union_all(self.closures.iter().map(|closure| &closure.void));

@@ -64,6 +64,37 @@ struct Eye {
     left: Point,
 }
 
+/// An end of a facet as seen from an eye.
+#[derive(Clone, Copy)]
+struct Sight {
+    point: Point,
+    offset: Point,
+    /// Sine of its direction; ±1 below the horizon is up to the caller.
+    sine: f64,
+    height: f64,
+}
+
+/// What is seen on the way along the surface to one side, nearest pieces by direction. On the way
+/// back along the surface everything is mirrored, so that pieces are appended there too.
+struct Side {
+    /// 1 on the way on, −1 on the way back: sines are kept times this.
+    sign: f64,
+    seen: Vec<Seen>,
+}
+
+/// Lists that the looks of one scenery share.
+pub(super) struct Views {
+    on: Side,
+    back: Side,
+}
+
+impl Views {
+    pub(super) fn new() -> Self {
+        let side = |sign| Side { sign, seen: Vec::new() };
+        Self { on: side(1.0), back: side(-1.0) }
+    }
+}
+
 impl Scenery {
     pub(super) fn unfold(facets: &[Facet], walls: [f64; 2]) -> Self {
         let width = walls[1] - walls[0];
@@ -87,82 +118,93 @@ impl Scenery {
         Self { segments, count: facets.len(), walls, top }
     }
 
-    /// Enters into `seen` what facet `index` sees from `at`, in order of direction.
-    pub(super) fn look(&self, index: usize, at: Point, normal: Point, seen: &mut Vec<Seen>) {
-        seen.clear();
+    /// What facet `index` sees from `at`, in order of direction.
+    pub(super) fn look<'a>(
+        &self,
+        index: usize,
+        at: Point,
+        normal: Point,
+        views: &'a mut Views,
+    ) -> &'a [Seen] {
+        let Views { on, back } = views;
+        on.seen.clear();
+        back.seen.clear();
         let eye = Eye { at, normal, left: Point::new(-normal.z, normal.x) };
         let own = COPIES as usize * self.count;
-        for j in own + index + 1..own + self.count {
-            self.enter(&eye, j, index, seen);
-        }
-        for j in (own..own + index).rev() {
-            self.enter(&eye, j, index, seen);
-        }
         let width = self.walls[1] - self.walls[0];
+        self.enter(&eye, own + index + 1..own + self.count, on);
         for copy in 1..=COPIES as usize {
             let distance = self.walls[1] - at.x + (copy - 1) as f64 * width;
-            if self.is_closed(&eye, distance, seen) {
+            if self.is_closed(&eye, distance, on) {
                 break;
             }
-            for j in own + copy * self.count..own + (copy + 1) * self.count {
-                self.enter(&eye, j, index, seen);
-            }
+            self.enter(&eye, own + copy * self.count..own + (copy + 1) * self.count, on);
         }
+        self.enter(&eye, own..own + index, back);
         for copy in 1..=COPIES as usize {
             let distance = self.walls[0] - at.x - (copy - 1) as f64 * width;
-            if self.is_closed(&eye, distance, seen) {
+            if self.is_closed(&eye, distance, back) {
                 break;
             }
-            for j in (own - copy * self.count..own - (copy - 1) * self.count).rev() {
-                self.enter(&eye, j, index, seen);
-            }
+            self.enter(&eye, own - copy * self.count..own - (copy - 1) * self.count, back);
         }
+        for piece in back.seen.iter().rev() {
+            self.insert(&eye, piece.mirrored(), on);
+        }
+        &on.seen
     }
 
     /// Whether no open direction passes below the top at `distance` (signed, sideways).
-    fn is_closed(&self, eye: &Eye, distance: f64, seen: &[Seen]) -> bool {
+    fn is_closed(&self, eye: &Eye, distance: f64, view: &Side) -> bool {
         let side = distance.signum();
         // A gap is closed here when neither of its ends, nor anything between, points to this
         // side below the line of sight over the top.
         let rim = Point::new(distance, (self.top - eye.at.z).max(0.0));
         let rim = if rim.norm() > 0.0 { rim } else { Point::new(side, 0.0) };
-        gaps(seen).all(|[from, to]| {
-            let (a, b) = (eye.direction(from), eye.direction(to));
+        let down = eye.sine_of(Point::new(0.0, -1.0)).map(|sine| view.sign * sine);
+        gaps(&view.seen).all(|[from, to]| {
+            let (a, b) = (eye.direction(view.sign * from), eye.direction(view.sign * to));
             // Directions of this side below the rim form a half-plane cut by the vertical down.
             let below = |d: Point| d.x * side > 0.0 && rim.cross(d) * side < -1e-12;
-            let down = eye.sine_of(Point::new(0.0, -1.0));
             !(below(a) || below(b) || down.is_some_and(|s| s > from && s < to))
         })
     }
 
-    fn enter(&self, eye: &Eye, segment: usize, own: usize, seen: &mut Vec<Seen>) {
-        let Segment { from, to } = self.segments[segment];
-        let (a, b) = (from - eye.at, to - eye.at);
-        // Facing means counter-clockwise as seen from the eye.
-        if a.cross(b) <= 0.0 {
-            return;
+    /// Enters segments, outward from the eye.
+    fn enter(&self, eye: &Eye, range: std::ops::Range<usize>, view: &mut Side) {
+        let mut last = Sight { point: Point::new(f64::NAN, 0.0), offset: Point::default(), sine: 0.0, height: 0.0 };
+        let onward = view.sign > 0.0;
+        for k in range.clone() {
+            let at = if onward { k } else { range.start + range.end - 1 - k };
+            let Segment { from, to } = self.segments[at];
+            let (a, b) = (from - eye.at, to - eye.at);
+            // Facing means counter-clockwise as seen from the eye.
+            if a.cross(b) <= 0.0 {
+                continue;
+            }
+            let (near, far) = if onward { (from, to) } else { (to, from) };
+            let first = if last.point == near { last } else { eye.sight(near) };
+            let second = eye.sight(far);
+            last = second;
+            // A facet without length at the eye itself (its fan) is no obstacle but rounding.
+            let reach = first.offset.dot(first.offset).max(second.offset.dot(second.offset));
+            if reach < AT_THE_EYE_NM2 || (first.height <= 0.0 && second.height <= 0.0) {
+                continue;
+            }
+            let begin = if first.height <= 0.0 { -1.0 } else { view.sign * first.sine };
+            let end = if second.height <= 0.0 { 1.0 } else { view.sign * second.sine };
+            if end - begin <= SLIVER {
+                continue;
+            }
+            let (copy, place) = (at / self.count, at % self.count);
+            let facet =
+                if (copy as i32 - COPIES) % 2 == 0 { place } else { self.count - 1 - place };
+            self.insert(eye, Seen { from: begin, to: end, facet, segment: at }, view);
         }
-        // A facet without length at the eye itself (its fan) is no obstacle but rounding.
-        if a.dot(a).max(b.dot(b)) < AT_THE_EYE_NM2 {
-            return;
-        }
-        let (height_a, height_b) = (a.dot(eye.normal), b.dot(eye.normal));
-        if height_a <= 0.0 && height_b <= 0.0 {
-            return;
-        }
-        let from = if height_a <= 0.0 { -1.0 } else { a.dot(eye.left) / a.dot(a).sqrt() };
-        let to = if height_b <= 0.0 { 1.0 } else { b.dot(eye.left) / b.dot(b).sqrt() };
-        if to - from <= SLIVER {
-            return;
-        }
-        let copy = segment / self.count;
-        let place = segment % self.count;
-        let facet = if (copy as i32 - COPIES) % 2 == 0 { place } else { self.count - 1 - place };
-        debug_assert!(facet != own || copy as i32 != COPIES);
-        self.insert(eye, Seen { from, to, facet, segment }, seen);
     }
 
-    fn insert(&self, eye: &Eye, new: Seen, seen: &mut Vec<Seen>) {
+    fn insert(&self, eye: &Eye, new: Seen, view: &mut Side) {
+        let Side { sign, seen } = view;
         if seen.last().is_none_or(|last| last.to <= new.from) {
             seen.push(new);
             return;
@@ -183,7 +225,7 @@ impl Scenery {
                 changed = true;
             }
             let (begin, end) = (old.from.max(new.from), old.to.min(new.to));
-            let middle = 0.5 * (begin + end);
+            let middle = *sign * 0.5 * (begin + end);
             if end - begin > SLIVER
                 && self.depth(eye, new.segment, middle) < self.depth(eye, old.segment, middle)
             {
@@ -226,7 +268,19 @@ impl Scenery {
     }
 }
 
+impl Seen {
+    fn mirrored(self) -> Self {
+        Self { from: -self.to, to: -self.from, ..self }
+    }
+}
+
 impl Eye {
+    fn sight(&self, point: Point) -> Sight {
+        let offset = point - self.at;
+        let sine = offset.dot(self.left) / offset.dot(offset).sqrt();
+        Sight { point, offset, sine, height: offset.dot(self.normal) }
+    }
+
     fn direction(&self, sine: f64) -> Point {
         self.normal * (1.0 - sine * sine).max(0.0).sqrt() + self.left * sine
     }
@@ -256,10 +310,9 @@ mod tests {
     }
 
     fn view(facets: &[Facet], walls: [f64; 2], index: usize) -> Vec<Seen> {
-        let mut seen = Vec::new();
         let facet = facets[index];
-        Scenery::unfold(facets, walls).look(index, facet.middle(), facet.normal, &mut seen);
-        seen
+        let scenery = Scenery::unfold(facets, walls);
+        scenery.look(index, facet.middle(), facet.normal, &mut Views::new()).to_vec()
     }
 
     #[test]
