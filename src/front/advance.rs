@@ -31,10 +31,21 @@ pub(super) fn advanced(surface: &Surface, thickness: f64) -> Surface {
     Surface { chains: chains.filter(|c| !c.pieces.is_empty()).collect(), walls: surface.walls }
 }
 
-fn advance(chain: &Chain, walls: [f64; 2], thickness: f64) -> Chain {
+/// Where the ends of each piece go in a step, chain by chain, also of pieces that turn over.
+pub(super) fn images(surface: &Surface, thickness: f64) -> Vec<Vec<[Point; 2]>> {
+    let of = |chain: &Chain| {
+        let (links, end) = links(chain, thickness);
+        let tos = links.iter().skip(1).map(|l| l.from).chain([end]).collect::<Vec<_>>();
+        links.iter().zip(tos).map(|(l, to)| [l.from, to]).collect()
+    };
+    surface.chains.iter().map(of).collect()
+}
+
+/// Where every piece of a chain begins after the step, and where the chain ends.
+fn links(chain: &Chain, thickness: f64) -> (Vec<Link>, Point) {
     let pieces = &chain.pieces;
     let n = pieces.len();
-    let mut links: Vec<Link> = pieces
+    let links: Vec<Link> = pieces
         .iter()
         .enumerate()
         .map(|(k, piece)| {
@@ -47,11 +58,16 @@ fn advance(chain: &Chain, walls: [f64; 2], thickness: f64) -> Chain {
             Link { piece: *piece, from }
         })
         .collect();
-    let mut end = if chain.closed {
+    let end = if chain.closed {
         links[0].from
     } else {
         wall_vertex(&pieces[n - 1], pieces[n - 1].facet.to, thickness)
     };
+    (links, end)
+}
+
+fn advance(chain: &Chain, walls: [f64; 2], thickness: f64) -> Chain {
+    let (mut links, mut end) = links(chain, thickness);
     let mut end_seam = chain.end_seam;
     remove_turned(&mut links, &mut end, &mut end_seam, chain.closed, walls, thickness);
     let tos: Vec<Point> = links.iter().skip(1).map(|l| l.from).chain([end]).collect();

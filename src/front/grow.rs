@@ -9,11 +9,14 @@
 //! throat) times facets squared. It fails honestly: too many facets or steps, a flux that did not
 //! converge.
 
-use super::advance::advanced;
-use super::closure::{cut, freeze};
+use super::advance::{advanced, images};
+use super::closure::{Closed, close, shut_off};
+use super::fair::faired;
 use super::outline::Outline;
+use super::passing::{is_sound, swept};
+use super::rebuild::rebuilt;
 use super::remesh::Mesh;
-use super::seam::{Track, follow, numbers, rename};
+use super::seam::{Track, follow, notches, plant};
 use super::surface::Surface;
 use super::throat::{Kind, Narrow, narrow_places};
 use super::transport::Transport;
@@ -26,7 +29,7 @@ const STEP_OF_THROAT: f64 = 0.12;
 /// Largest step over the facet length.
 const STEP_OF_FACET: f64 = 1.0;
 /// Turn between neighbours of a fan: in proportion to facet over throat, within bounds, radians.
-const FAN_OF_FACET: f64 = 6.0;
+const FAN_OF_FACET: f64 = 2.0;
 const FAN_RAD: [f64; 2] = [0.05, 0.2];
 /// The same where all grows at one rate and facets cost nothing: arcs within 5e-5 of their radius.
 const CONFORMAL_FAN_RAD: f64 = 0.02;
@@ -34,14 +37,19 @@ const CONFORMAL_FAN_RAD: f64 = 0.02;
 const MOST_EXTRAPOLATION: f64 = 0.2;
 /// More facets than this are refused.
 const MOST_FACETS: usize = 20_000;
-/// More cuts than this in one step are refused.
-const MOST_CUTS: usize = 1000;
+/// Closures of one step; what is left is taken up in the next.
+const MOST_CLOSURES: usize = 1000;
+/// Trials for the thickness at which a throat closes.
+const MOST_TRIALS: usize = 24;
+/// Least step, over the finest facet: what comes closer than that may pass, and is set right.
+const LEAST_STEP: f64 = 0.1;
 /// More steps than this are refused.
 const MOST_STEPS: usize = 20_000;
 /// Facet length in a closing throat over that on the open surface.
 const THROAT_FACET: f64 = 0.125;
 /// Relative closeness of a throat to the closure width when it closes.
-const CLOSED_WITHIN: f64 = 1e-6;
+const CLOSED_WITHIN: f64 = 1e-4;
+const CLOSED: f64 = 1.0 + 2.0 * CLOSED_WITHIN;
 
 /// Grows a film of `thickness_nm` on an open flat over all surfaces that the ambient of a scene
 /// reaches.
@@ -127,7 +135,7 @@ impl<'a> Run<'a> {
             }
             self.count += self.surface.len();
             let before = self.solve_rates()?;
-            self.step(thickness - self.grown, &before);
+            self.step(thickness - self.grown, &before)?;
             self.close_throats()?;
             let (surface, width) = (&self.surface, self.resolution.closure_width_nm);
             let closures = &mut self.closures;
@@ -168,11 +176,11 @@ impl<'a> Run<'a> {
     }
 
     /// Moves by one step of at most `remaining`, shortened to where a throat closes exactly.
-    fn step(&mut self, remaining: f64, rates_before: &[Option<f64>]) {
+    fn step(&mut self, remaining: f64, rates_before: &[Option<f64>]) -> Result<(), FrontError> {
         let fastest = self.surface.pieces().map(|piece| piece.rate).fold(0.0, f64::max);
         if fastest == 0.0 {
             self.grown += remaining;
-            return;
+            return Ok(());
         }
         let closed = self.resolution.closure_width_nm;
         let mut thickness = remaining.min(STEP_OF_FACET * self.mesh.facet_nm / fastest);
@@ -183,26 +191,28 @@ impl<'a> Run<'a> {
             let last = 1.05 * (throat.width - closed) / speed;
             thickness = thickness.min(if last < 1.5 * share { last } else { share });
         }
+        let least = LEAST_STEP * self.mesh.least_nm / fastest;
+        thickness = thickness.max(least.min(remaining));
         self.extrapolate(rates_before, thickness);
-        let mut next = advanced(&self.surface, thickness);
+        let mut next = self.moved(thickness);
         let mut narrow = narrow_places(&next);
-        let widths = (narrowest(&self.narrow), narrowest(&narrow));
-        if let (Some(before), Some(after)) = widths
+        let width_of = |places: &[Narrow]| narrowest(places).map(|throat| throat.width);
+        if let (Some(before), Some(after)) = (width_of(&self.narrow), width_of(&narrow))
             && before > closed
             && after < closed
         {
             // Regula falsi on the width; the bracket always holds the closure.
             let (mut open, mut shut) = (0.0, thickness);
             let (mut open_width, mut shut_width) = (before, after);
-            for turn in 0..60 {
+            for turn in 0..MOST_TRIALS {
                 let share = (open_width - closed) / (open_width - shut_width);
                 let share =
                     if turn % 4 == 3 || !share.is_finite() { 0.5 } else { share.clamp(0.01, 0.99) };
                 thickness = open + (shut - open) * share;
-                next = advanced(&self.surface, thickness);
+                next = self.moved(thickness);
                 narrow = narrow_places(&next);
-                let width = narrowest(&narrow).unwrap_or(f64::INFINITY);
-                if (width - closed).abs() < CLOSED_WITHIN * closed || shut - open < 1e-12 {
+                let width = width_of(&narrow).unwrap_or(f64::INFINITY);
+                if (width - closed).abs() < CLOSED_WITHIN * closed {
                     break;
                 }
                 if width > closed {
@@ -212,45 +222,64 @@ impl<'a> Run<'a> {
                 }
             }
         }
-        self.surface = next;
-        self.narrow = narrow;
         self.grown += thickness;
         self.last_step = thickness;
+        if is_sound(&next) {
+            self.surface = next;
+            self.narrow = narrow;
+            return Ok(());
+        }
+        let sky = self.surface.top() + thickness * fastest + SKY_MARGIN_NM;
+        let images = images(&self.surface, thickness);
+        let left = swept(&self.surface.ambient(sky)?, &self.surface, &images);
+        let (open, closed) = shut_off(&left, sky, closed);
+        let notches = notches(&self.surface);
+        self.surface = rebuilt(&open, sky, &self.surface);
+        self.record(closed, &notches);
+        self.narrow = narrow_places(&self.surface);
+        Ok(())
     }
 
+    /// The surface a step on; smooth stretches stay so where the rates vary.
+    fn moved(&self, thickness: f64) -> Surface {
+        let next = advanced(&self.surface, thickness);
+        if self.transport.is_conformal() { next } else { faired(next) }
+    }
+
+    /// Closes every throat that is no wider than the closure width.
     fn close_throats(&mut self) -> Result<(), FrontError> {
-        let closed = self.resolution.closure_width_nm * (1.0 + 10.0 * CLOSED_WITHIN);
-        for _ in 0..MOST_CUTS {
-            let closing = self.narrow.iter().filter(|n| n.kind != Kind::Taper && n.width <= closed);
-            let Some(&throat) = closing.min_by(|a, b| a.width.total_cmp(&b.width)) else {
-                return Ok(());
-            };
-            let closure = self.closures.len();
-            let notches = numbers(&self.surface);
-            cut(&mut self.surface, &throat, closure);
+        let width = self.resolution.closure_width_nm;
+        for _ in 0..MOST_CLOSURES {
+            let narrowest = narrowest(&self.narrow).filter(|throat| throat.width <= width * CLOSED);
+            let Some(&throat) = narrowest else { return Ok(()) };
+            let notches = notches(&self.surface);
             let sky = self.surface.top() + SKY_MARGIN_NM;
-            let voids = freeze(&mut self.surface, sky, self.resolution.closure_width_nm)?;
-            let void = Region::union_all(&voids);
-            let left = numbers(&self.surface);
-            let buried = notches.into_iter().find(|notch| !left.contains(notch));
-            match buried {
-                // The notch over a closed throat has filled up to here: its seam goes on.
-                Some(notch) if void.is_empty() => rename(&mut self.surface, closure, notch),
-                _ => {
-                    let middle = Point::new(throat.middle.x, throat.foot.z);
-                    let points = vec![middle];
-                    self.tracks.push(Track { closure, points: points.clone() });
-                    self.closures.push(Closure {
-                        thickness_nm: self.grown,
-                        throat: middle,
-                        void,
-                        seam: points,
-                    });
-                }
+            let closed = close(&mut self.surface, throat.middle, sky, width)?;
+            if closed.is_empty() {
+                return Ok(());
             }
+            self.record(closed, &notches);
             self.narrow = narrow_places(&self.surface);
         }
-        Err(FrontError::Inconsistent("a throat does not stay closed"))
+        Ok(())
+    }
+
+    /// Enters what closed; a notch that has filled up without a void goes on as the same seam.
+    fn record(&mut self, closed: Vec<Closed>, notches: &[(usize, Point)]) {
+        let reach = self.resolution.closure_width_nm;
+        for Closed { throat, void, plug } in closed {
+            let is_near = |p: Point| {
+                plug.contains(p) || plug.edges().any(|(a, b)| p.distance_to_segment(a, b) < reach)
+            };
+            let buried = notches.iter().find(|(_, at)| void.is_empty() && is_near(*at));
+            let seam = buried.map_or(self.closures.len(), |&(seam, _)| seam);
+            if buried.is_none() {
+                self.tracks.push(Track { closure: seam, points: vec![throat] });
+                let thickness_nm = self.grown;
+                self.closures.push(Closure { thickness_nm, throat, void, seam: vec![throat] });
+            }
+            plant(&mut self.surface, &plug, seam);
+        }
     }
 
     fn finish(self, steps: usize) -> Result<Growth, FrontError> {
@@ -271,7 +300,7 @@ impl<'a> Run<'a> {
     }
 }
 
-fn narrowest(places: &[Narrow]) -> Option<f64> {
-    let closing = places.iter().filter(|n| n.kind != Kind::Taper).map(|n| n.width);
-    closing.min_by(f64::total_cmp)
+fn narrowest(places: &[Narrow]) -> Option<&Narrow> {
+    let closing = places.iter().filter(|n| n.kind != Kind::Taper);
+    closing.min_by(|a, b| a.width.total_cmp(&b.width))
 }

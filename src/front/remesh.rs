@@ -30,6 +30,14 @@ const GRADING: f64 = 0.15;
 /// Longer than this times the wanted length is split, shorter than that is joined.
 const SPLIT: f64 = 1.4;
 const JOIN: f64 = 0.45;
+/// Convex corners open into a fan above this turn, in radians, where both their edges exceed this
+/// share of the facet length: less is a smooth surface, or the noise of one.
+const OPENS_RAD: f64 = 0.4;
+const EDGE: f64 = 0.25;
+/// A piece shorter than this times the wanted length is taken out where its neighbours run on.
+const COLLAPSE: f64 = 0.15;
+/// Neighbours run on when they turn by less than this, in radians.
+const RUNS_ON_RAD: f64 = 0.35;
 /// Most turn at a point that joining may remove, in fan steps.
 const JOIN_TURN: f64 = 0.6;
 
@@ -75,8 +83,7 @@ impl Mesh {
 
     /// Pieces between two neighbours; none unless the corner is convex or one film is faster.
     fn fan(&self, a: &Piece, b: &Piece, solid_rates: &[f64]) -> Vec<Piece> {
-        let (n, m) = (a.facet.normal, b.facet.normal);
-        let turn = m.cross(n).atan2(n.dot(m));
+        let (n, turn) = (a.facet.normal, turn(a, b));
         let (rate_a, rate_b) = (solid_rates[a.facet.solid], solid_rates[b.facet.solid]);
         let quarter = std::f64::consts::FRAC_PI_2;
         // The last normal of the faster film stands along the slower surface.
@@ -87,7 +94,8 @@ impl Mesh {
             let first = Point::new(-a.facet.normal.z, a.facet.normal.x);
             return self.sweep(b, b.facet.from, first, turn + quarter, false);
         }
-        if turn > 1.5 * self.fan_rad {
+        let is_long = a.facet.length().min(b.facet.length()) > EDGE * self.facet_nm;
+        if turn > (1.5 * self.fan_rad).max(OPENS_RAD) && is_long {
             let steps = (turn / self.fan_rad).ceil();
             return self.arc(a, b.facet.from, n, turn / steps, 1..steps as usize);
         }
@@ -144,8 +152,33 @@ impl Mesh {
     /// Splits long pieces and joins short ones.
     pub(super) fn refine(&self, surface: &mut Surface, throats: &[Narrow]) {
         for chain in &mut surface.chains {
+            self.collapse(chain, throats);
             self.join(chain, throats);
             self.split(chain, throats);
+        }
+    }
+
+    /// Takes out small pieces that stand across a surface which is smooth without them: the
+    /// neighbours meet in their middle.
+    fn collapse(&self, chain: &mut Chain, throats: &[Narrow]) {
+        let mut k = 1;
+        while k + 1 < chain.pieces.len() {
+            let [a, b, c] = [k - 1, k, k + 1].map(|at| chain.pieces[at]);
+            let solid = b.facet.solid;
+            let alike = a.facet.solid == solid && c.facet.solid == solid;
+            let free = b.seam.is_none() && c.seam.is_none();
+            let own = b.facet.length();
+            let is_small = own > LEAST_LENGTH_NM
+                && own < a.facet.length().min(c.facet.length())
+                && own < COLLAPSE * self.size_at(b.facet.from, throats);
+            if alike && free && is_small && turn(&a, &c).abs() < RUNS_ON_RAD {
+                let middle = b.facet.middle();
+                chain.pieces[k - 1] = a.with_ends(a.facet.from, middle);
+                chain.pieces[k + 1] = c.with_ends(middle, c.facet.to);
+                chain.pieces.remove(k);
+            } else {
+                k += 1;
+            }
         }
     }
 
@@ -201,16 +234,20 @@ impl Mesh {
     /// Length of two neighbours over the wanted one, when they should be one piece.
     fn joint(&self, a: &Piece, b: &Piece, throats: &[Narrow]) -> Option<f64> {
         let (la, lb) = (a.facet.length(), b.facet.length());
-        let (n, m) = (a.facet.normal, b.facet.normal);
-        let turn = n.cross(m).atan2(n.dot(m)).abs();
         let alike = a.facet.solid == b.facet.solid && b.seam.is_none();
-        if !alike || turn > JOIN_TURN * self.fan_rad || la.min(lb) < LEAST_LENGTH_NM {
+        if !alike || turn(a, b).abs() > JOIN_TURN * self.fan_rad || la.min(lb) < LEAST_LENGTH_NM {
             return None;
         }
         let size = self.size_at(b.facet.from, throats);
         let short = la.min(lb) < JOIN * size && la + lb < SPLIT * size;
         short.then_some((la + lb) / size)
     }
+}
+
+/// Turn from one piece to the next, positive when convex (clockwise), in radians.
+fn turn(a: &Piece, b: &Piece) -> f64 {
+    let (n, m) = (a.facet.normal, b.facet.normal);
+    m.cross(n).atan2(n.dot(m))
 }
 
 fn join(a: &Piece, b: &Piece) -> Piece {

@@ -6,7 +6,8 @@
 //! closure widths (1 nm by default) from its middle.
 
 use super::surface::{Chain, Surface};
-use crate::geom::Point;
+use crate::geom::{Point, Region};
+use crate::num::tolerance::SAME_LINE_NM;
 
 /// A seam in the making.
 #[derive(Debug, Clone, PartialEq)]
@@ -36,23 +37,32 @@ pub(super) fn follow(track: &mut Track, surface: &Surface, closure_width: f64) -
     true
 }
 
-/// The numbers of all seams whose notch is still on the surface, in its order.
-pub(super) fn numbers(surface: &Surface) -> Vec<usize> {
+/// Every seam whose notch is still on the surface, and where that is.
+pub(super) fn notches(surface: &Surface) -> Vec<(usize, Point)> {
     let of = |chain: &Chain| {
-        let pieces = chain.pieces.iter().filter_map(|piece| piece.seam);
-        pieces.chain(chain.end_seam).collect::<Vec<_>>()
+        let pieces = chain.pieces.iter().filter_map(|p| Some((p.seam?, p.facet.from)));
+        let end = chain.end_seam.zip(chain.pieces.last().map(|last| last.facet.to));
+        pieces.chain(end).collect::<Vec<_>>()
     };
     surface.chains.iter().flat_map(of).collect()
 }
 
-/// Gives the notch of one seam to another.
-pub(super) fn rename(surface: &mut Surface, from: usize, to: usize) {
-    for chain in &mut surface.chains {
-        let pieces = chain.pieces.iter_mut().map(|piece| &mut piece.seam);
-        for seam in pieces.chain([&mut chain.end_seam]) {
-            if *seam == Some(from) {
-                *seam = Some(to);
+/// Marks the lowest point of the surface on a plug as the notch of a seam.
+pub(super) fn plant(surface: &mut Surface, plug: &Region, seam: usize) {
+    let on_plug = |p: Point| plug.edges().any(|(a, b)| p.distance_to_segment(a, b) < SAME_LINE_NM);
+    let mut lowest: Option<(Point, usize, usize)> = None;
+    for (c, chain) in surface.chains.iter().enumerate() {
+        for (k, p) in chain.points().enumerate() {
+            if lowest.is_none_or(|(at, _, _)| p.z < at.z) && on_plug(p) {
+                lowest = Some((p, c, k));
             }
+        }
+    }
+    if let Some((_, c, k)) = lowest {
+        let chain = &mut surface.chains[c];
+        match chain.pieces.get_mut(k) {
+            Some(piece) => piece.seam = Some(seam),
+            None => chain.end_seam = Some(seam),
         }
     }
 }

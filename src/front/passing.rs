@@ -1,0 +1,89 @@
+//! Fronts that pass through each other in a step: how that is seen, and what is right then.
+//!
+//! A step is sound when the pieces cross neither each other nor a wall, and the chains still end on
+//! their walls in order. Where it is not, the step is done once more as a set: each piece sweeps
+//! the quadrilateral between itself and its image, and the ambient loses all that is swept
+//! (Huygens' construction; the front moves only into the ambient). Cost: a sort and a sweep over
+//! heights; booleans only where fronts passed.
+
+use super::surface::Surface;
+use crate::geom::{Point, Region};
+
+/// Whether no two pieces cross, and all stay between the walls.
+pub(super) fn is_sound(surface: &Surface) -> bool {
+    const OUTSIDE_NM: f64 = 1e-9;
+    let [left, right] = surface.walls;
+    let within = |p: Point| p.x >= left - OUTSIDE_NM && p.x <= right + OUTSIDE_NM;
+    struct Span {
+        a: Point,
+        b: Point,
+        low: f64,
+        high: f64,
+        chain: usize,
+        at: usize,
+    }
+    let mut spans: Vec<Span> = Vec::with_capacity(surface.len());
+    for (chain, c) in surface.chains.iter().enumerate() {
+        for (at, piece) in c.pieces.iter().enumerate() {
+            let (a, b) = (piece.facet.from, piece.facet.to);
+            if !within(a) || !within(b) || !(a.z + b.z).is_finite() {
+                return false;
+            }
+            if a != b {
+                spans.push(Span { a, b, low: a.z.min(b.z), high: a.z.max(b.z), chain, at });
+            }
+        }
+    }
+    spans.sort_by(|s, t| s.low.total_cmp(&t.low));
+    for (k, s) in spans.iter().enumerate() {
+        let (from, to) = (s.a.x.min(s.b.x), s.a.x.max(s.b.x));
+        for t in spans[k + 1..].iter().take_while(|t| t.low <= s.high) {
+            if t.a.x.max(t.b.x) < from || t.a.x.min(t.b.x) > to {
+                continue;
+            }
+            let shared = s.b == t.a || s.a == t.b;
+            let adjacent = s.chain == t.chain && s.at.abs_diff(t.at) == 1;
+            if !shared && !adjacent && cross(s.a, s.b, t.a, t.b) {
+                return false;
+            }
+        }
+    }
+    true
+}
+
+/// Whether two segments cross in their insides.
+fn cross(a: Point, b: Point, c: Point, d: Point) -> bool {
+    let side = |p: Point, q: Point, r: Point| (q - p).cross(r - p);
+    side(a, b, c) * side(a, b, d) < 0.0 && side(c, d, a) * side(c, d, b) < 0.0
+}
+
+/// The ambient left by a step in which each piece goes from its place to its image; `images` are
+/// the ends of the images, chain by chain, piece by piece.
+pub(super) fn swept(
+    ambient: &Region,
+    surface: &Surface,
+    images: &[Vec<[Point; 2]>],
+) -> Region {
+    let quads = surface.chains.iter().zip(images).flat_map(|(chain, images)| {
+        chain.pieces.iter().zip(images).map(|(piece, [from, to])| {
+            let (a, b) = (piece.facet.from, piece.facet.to);
+            let inside = piece.facet.normal * (-BACK_NM);
+            vec![a + inside, b + inside, *to, *from]
+        })
+    });
+    let quads: Vec<Vec<Point>> = quads.flat_map(wound).collect();
+    ambient.difference(&Region::from_rings(quads))
+}
+
+/// How far into the solid a sweep begins, so that neighbours leave no hairs, in nm.
+const BACK_NM: f64 = 1e-4;
+
+/// A quadrilateral as rings that all wind the same way: two triangles, either may be turned over.
+fn wound(quad: Vec<Point>) -> Vec<Vec<Point>> {
+    let triangle = |i: usize, j: usize, k: usize| {
+        let ring = vec![quad[i], quad[j], quad[k]];
+        let area = (ring[1] - ring[0]).cross(ring[2] - ring[0]);
+        if area < 0.0 { vec![ring[0], ring[2], ring[1]] } else { ring }
+    };
+    vec![triangle(0, 1, 2), triangle(0, 2, 3)]
+}
