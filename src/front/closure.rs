@@ -1,32 +1,45 @@
-//! What happens when a throat closes: what is narrower than the closure width turns solid, and
-//! the void behind it freezes.
+//! What happens when a throat closes: the ambient is cut there, and the void behind it freezes.
 //!
-//! Method: a morphological opening of the ambient with a disc of the closure width. What the disc
-//! does not reach is narrow; of that turns solid what lies at the throat, and what parts the
-//! ambient in two. A part that does not reach the sky any more is a void. The surface of the rest is
-//! read off its outline ([`super::rebuild`]), so that any number of throats may close at once. Cost:
-//! some booleans on the outline.
+//! Method: morphological openings of the ambient around the throat with a disc. What a disc a
+//! little wider than the closure width does not reach is the neck. Where the neck parts the
+//! ambient in two it is cut across at its middle: a neck about to close is nearly parallel, and
+//! which place of it is narrowest is chance, while its middle is well determined. Where
+//! nothing lies behind, what a disc of the closure width does not reach turns solid. A
+//! part that does not reach the sky any more is a void, less what is narrower than the
+//! closure width. The surface of the rest is read off its outline ([`super::rebuild`]), so
+//! that any number of throats may close at once. Cost: some booleans on the outline.
 
 use super::FrontError;
 use super::rebuild::rebuilt;
 use super::surface::Surface;
 use crate::geom::{Point, Region};
-use crate::num::tolerance::ON_EDGE_NM;
+use crate::num::tolerance::{ON_EDGE_NM, SKY_MARGIN_NM};
 
-/// The disc of the opening over the closure width: parallel sides at just that width are narrow.
-const OPENING_SHARE: f64 = 1.002;
-/// Turn of the opening's arcs, in radians.
-const OPENING_STEP: f64 = 0.4;
-/// Narrow parts above this share of the squared closure width are tips, below it the rounding of corners.
+/// Widths up to this, in closure widths, belong to the neck of a throat that closes.
+const NECK: f64 = 1.15;
+/// What turns solid where nothing lies behind: parallel sides at just the closure width do.
+const SLIT: f64 = 1.002;
+/// What a void loses: parallel sides at just the closure width stay.
+const SEAM: f64 = 0.98;
+/// Thickness of a cut, in closure widths.
+const CUT: f64 = 0.01;
+/// Turn of the arcs of a disc, in radians.
+const ARC_RAD: f64 = 0.4;
+/// Narrow parts above this area are tips, below it the rounding of corners; squared closure widths.
 const TIP: f64 = 0.25;
-/// Smaller parts than this share are the rounding of the arcs.
+/// Smaller parts are the rounding of the arcs, in squared closure widths.
 const CRUMB: f64 = 1e-3;
-/// Parts of the ambient smaller than this, in squared closure widths, are no voids.
+/// Parts of the ambient smaller than this are no voids, in squared closure widths.
 const VOID: f64 = 2.0;
-/// Regions nearer than this share of the closure width touch.
+/// Regions nearer than this touch, in closure widths.
 const TOUCH: f64 = 0.02;
+/// How far around a throat its neck is looked for, in closure widths and as a share of the
+/// ambient's height; and how much further the disc is moved there, in closure widths.
+const REACH: f64 = 16.0;
+const REACH_OF_HEIGHT: f64 = 0.05;
+const MARGIN: f64 = 4.0;
 
-/// A place that turned solid.
+/// A place that closed.
 pub(super) struct Closed {
     /// Middle of the throat.
     pub(super) throat: Point,
@@ -36,8 +49,7 @@ pub(super) struct Closed {
     pub(super) plug: Region,
 }
 
-/// Closes what is narrower than `width` at a throat, and all that parts the ambient. Empty when
-/// nothing did.
+/// Closes the throat around a point, of the closure width `width`. Empty when nothing closed.
 pub(super) fn close(
     surface: &mut Surface,
     throat: Point,
@@ -45,91 +57,187 @@ pub(super) fn close(
     width: f64,
 ) -> Result<Vec<Closed>, FrontError> {
     let ambient = surface.ambient(sky)?;
-    let narrow = narrow_parts(&ambient, surface.walls, sky, width);
-    let all = Region::union_all(&narrow);
-    let wide: Vec<Region> = ambient.difference(&all).parts().collect();
-    let reach = TOUCH * width;
-    let near = |part: &Region| {
-        part.edges().any(|(a, b)| throat.distance_to_segment(a, b) < 2.0 * width)
-            || part.contains(throat)
-    };
-    let plugs: Vec<Region> = narrow
-        .into_iter()
-        .filter(|part| {
-            let is_tip = part.area() > TIP * width * width && near(part);
-            let grown = part.grown(reach, OPENING_STEP);
-            is_tip || wide.iter().filter(|side| !side.intersection(&grown).is_empty()).count() > 1
-        })
-        .collect();
+    let at = Place { ambient: &ambient, walls: surface.walls, throat, sky, width };
+    let mut plugs = at.cuts();
+    if plugs.is_empty() {
+        plugs = at.tips();
+    }
     if plugs.is_empty() {
         return Ok(Vec::new());
     }
     let rest = ambient.difference(&Region::union_all(&plugs));
-    let (open, shut): (Vec<Region>, Vec<Region>) = rest
-        .parts()
-        .partition(|part| part.bounds().is_some_and(|b| b.max.z >= sky - ON_EDGE_NM));
+    let (open, shut) = by_sky(&rest, sky);
+    let mut closed = Vec::new();
+    for part in shut {
+        let void = without_seams(&part, surface.walls, width);
+        if void.area() > VOID * width * width {
+            let grown = part.grown(TOUCH * width, ARC_RAD);
+            let touches = |plug: &Region| !plug.intersection(&grown).is_empty();
+            let plug = plugs.iter().position(touches).map(|k| plugs.remove(k)).unwrap_or_default();
+            let throat = middle(if plug.is_empty() { &void } else { &plug }, surface.walls);
+            closed.push(Closed { throat, void, plug });
+        }
+    }
+    for plug in plugs {
+        closed.push(Closed { throat: middle(&plug, surface.walls), void: Region::empty(), plug });
+    }
     let [open] = &open[..] else {
         return Err(FrontError::Inconsistent("the sky is not one open space"));
     };
-    let mut plugs: Vec<Option<Region>> = plugs.into_iter().map(Some).collect();
-    let mut closed = Vec::new();
-    for void in shut.into_iter().filter(|part| part.area() > VOID * width * width) {
-        let grown = void.grown(reach, OPENING_STEP);
-        let touching = |plug: &Option<Region>| {
-            plug.as_ref().is_some_and(|plug| !plug.intersection(&grown).is_empty())
-        };
-        let highest = (0..plugs.len())
-            .filter(|&k| touching(&plugs[k]))
-            .max_by(|&a, &b| top(&plugs[a]).total_cmp(&top(&plugs[b])));
-        let plug = highest.and_then(|k| plugs[k].take()).unwrap_or_default();
-        let throat = middle(if plug.is_empty() { &void } else { &plug }, surface.walls);
-        closed.push(Closed { throat, void, plug });
-    }
-    for plug in plugs.into_iter().flatten().filter(|plug| plug.area() > TIP * width * width) {
-        closed.push(Closed { throat: middle(&plug, surface.walls), void: Region::empty(), plug });
-    }
     *surface = rebuilt(open, sky, surface);
     Ok(closed)
 }
 
 /// Takes away parts of the ambient that the sky does not reach; they are voids where wide enough.
-pub(super) fn shut_off(ambient: &Region, sky: f64, width: f64) -> (Region, Vec<Closed>) {
-    let (open, shut): (Vec<Region>, Vec<Region>) = ambient
-        .parts()
-        .partition(|part| part.bounds().is_some_and(|b| b.max.z >= sky - ON_EDGE_NM));
-    let voids = shut.into_iter().filter(|part| part.area() > VOID * width * width);
-    let closed = voids.map(|void| {
-        let throat = void.bounds().map_or(Point::default(), |b| {
-            Point::new(0.5 * (b.min.x + b.max.x), b.max.z)
-        });
-        Closed { throat, void, plug: Region::empty() }
+pub(super) fn shut_off(
+    ambient: &Region,
+    walls: [f64; 2],
+    sky: f64,
+    width: f64,
+) -> (Region, Vec<Closed>) {
+    let (open, shut) = by_sky(ambient, sky);
+    let voids = shut.iter().map(|part| without_seams(part, walls, width));
+    let closed = voids.filter(|void| void.area() > VOID * width * width).map(|void| {
+        let Point { x, .. } = middle(&void, walls);
+        let z = void.bounds().map_or(0.0, |b| b.max.z);
+        Closed { throat: Point::new(x, z), void, plug: Region::empty() }
     });
     let closed = closed.collect();
     (Region::union_all(&open), closed)
 }
 
-/// The parts of the ambient that a disc of `width` does not reach.
-fn narrow_parts(ambient: &Region, walls: [f64; 2], sky: f64, width: f64) -> Vec<Region> {
-    let radius = 0.5 * OPENING_SHARE * width;
-    let Some(bounds) = ambient.bounds() else { return Vec::new() };
-    let margin = 4.0 * width;
-    let (below, above) = (bounds.min.z - margin, sky + margin);
-    // Beyond a wall the ambient goes on as its image, above the sky it is open.
-    let images = walls.map(|wall| {
-        let strip = Region::rectangle([wall - margin, wall + margin], [below, above]);
-        ambient.mirrored(wall).intersection(&strip)
-    });
-    let [left, right] = [walls[0] - margin, walls[1] + margin];
-    let space = Region::rectangle([left, right], [sky - margin.min(0.1), above]);
-    let whole = Region::union_all(images.iter().chain([ambient, &space]));
-    let frame = Region::rectangle([left, right], [below, above]);
-    let eroded = whole.difference(&frame.difference(&whole).grown(radius, OPENING_STEP));
-    let narrow = ambient.difference(&eroded.grown(radius, OPENING_STEP));
-    narrow.parts().filter(|part| part.area() > CRUMB * width * width).collect()
+/// The parts that reach the sky, and those that do not.
+fn by_sky(ambient: &Region, sky: f64) -> (Vec<Region>, Vec<Region>) {
+    ambient.parts().partition(|part| part.bounds().is_some_and(|b| b.max.z >= sky - ON_EDGE_NM))
 }
 
-fn top(region: &Option<Region>) -> f64 {
-    region.as_ref().and_then(Region::bounds).map_or(f64::NEG_INFINITY, |b| b.max.z)
+/// The surroundings of a throat.
+struct Place<'a> {
+    ambient: &'a Region,
+    walls: [f64; 2],
+    throat: Point,
+    sky: f64,
+    width: f64,
+}
+
+impl Place<'_> {
+    /// Cuts across the necks that part the ambient.
+    fn cuts(&self) -> Vec<Region> {
+        let necks = self.narrower_than(NECK * self.width);
+        let wide: Vec<Region> =
+            self.ambient.difference(&Region::union_all(&necks)).parts().collect();
+        let parts = |neck: &&Region| {
+            let grown = neck.grown(TOUCH * self.width, ARC_RAD);
+            wide.iter().filter(|side| !side.intersection(&grown).is_empty()).count() > 1
+        };
+        necks.iter().filter(parts).map(|neck| self.cut(neck)).collect()
+    }
+
+    /// A thin part of a neck across it, at its middle.
+    fn cut(&self, neck: &Region) -> Region {
+        let beyond = |wall: f64| {
+            neck.bounds().is_some_and(|b| (b.min.x..=b.max.x).contains(&wall))
+                || neck.edges().any(|(a, _)| (a.x - wall).abs() < ON_EDGE_NM)
+        };
+        let images = self.walls.into_iter().filter(|&wall| beyond(wall));
+        let images: Vec<Region> = images.map(|wall| neck.mirrored(wall)).collect();
+        let whole = Region::union_all(images.iter().chain([neck]));
+        let (centre, along) = axis(&whole);
+        let across = Point::new(-along.z, along.x);
+        let (thick, long) = (along * (0.5 * CUT * self.width), across * (2.0 * self.width));
+        let slab = vec![
+            centre - thick - long,
+            centre + thick - long,
+            centre + thick + long,
+            centre - thick + long,
+        ];
+        // The slab may meet other narrow parts beside: only the neck is cut.
+        let grown = neck.grown(TOUCH * self.width, ARC_RAD);
+        Region::from_rings([slab]).intersection(&grown).intersection(self.ambient)
+    }
+
+    /// The narrow parts at the throat itself.
+    fn tips(&self) -> Vec<Region> {
+        let (near, least) = (2.0 * self.width, TIP * self.width * self.width);
+        let is_near = |part: &Region| {
+            part.contains(self.throat)
+                || part.edges().any(|(a, b)| self.throat.distance_to_segment(a, b) < near)
+        };
+        let narrow = self.narrower_than(SLIT * self.width);
+        narrow.into_iter().filter(|part| part.area() > least && is_near(part)).collect()
+    }
+
+    /// The parts of the ambient around the throat that a disc of `diameter` does not reach.
+    fn narrower_than(&self, diameter: f64) -> Vec<Region> {
+        let Some(bounds) = self.ambient.bounds() else { return Vec::new() };
+        let height = bounds.max.z - bounds.min.z;
+        let reach = (REACH * self.width).max(REACH_OF_HEIGHT * height);
+        let Point { x, z } = self.throat;
+        let around = |r: f64| Region::rectangle([x - r, x + r], [z - r, z + r]);
+        let (window, frame) = (around(reach), around(reach + MARGIN * self.width));
+        // Beyond a wall the ambient goes on as its image, above the sky it is open.
+        let images =
+            self.walls.map(|wall| self.ambient.intersection(&frame.mirrored(wall)).mirrored(wall));
+        let far = reach + 2.0 * MARGIN * self.width;
+        let above = [self.sky - SKY_MARGIN_NM.min(self.width), self.sky.max(z) + far];
+        let above = Region::rectangle([x - far, x + far], above);
+        let own = self.ambient.intersection(&frame);
+        let whole = Region::union_all(images.iter().chain([&own, &above])).intersection(&frame);
+        let opened = opened(&whole, &frame, 0.5 * diameter);
+        let narrow = own.intersection(&window).difference(&opened);
+        let least = CRUMB * self.width * self.width;
+        narrow.parts().filter(|part| part.area() > least).collect()
+    }
+}
+
+/// What a disc reaches of a region in a frame; beyond the frame it is free.
+fn opened(region: &Region, frame: &Region, radius: f64) -> Region {
+    let solid = frame.difference(region);
+    region.difference(&solid.grown(radius, ARC_RAD)).grown(radius, ARC_RAD)
+}
+
+/// A void without the parts that are narrower than the closure width.
+fn without_seams(region: &Region, walls: [f64; 2], width: f64) -> Region {
+    // Beyond a wall the region goes on as its image.
+    let touches = |wall: f64| region.rings().flatten().any(|p| (p.x - wall).abs() < ON_EDGE_NM);
+    let images = walls.into_iter().filter(|&wall| touches(wall));
+    let images: Vec<Region> = images.map(|wall| region.mirrored(wall)).collect();
+    let whole = Region::union_all(images.iter().chain([region]));
+    let Some(bounds) = whole.bounds() else { return Region::empty() };
+    let margin = 2.0 * width;
+    let frame = Region::rectangle(
+        [bounds.min.x - margin, bounds.max.x + margin],
+        [bounds.min.z - margin, bounds.max.z + margin],
+    );
+    let seams = region.difference(&opened(&whole, &frame, 0.5 * SEAM * width));
+    // What an opening rounds off in corners is no seam.
+    let is_seam = |part: &Region| part.area() > TIP * width * width;
+    let seams: Vec<Region> = seams.parts().filter(is_seam).collect();
+    let rest = region.difference(&Region::union_all(&seams));
+    let is_wide = |part: &Region| part.area() > VOID * width * width;
+    let wide: Vec<Region> = rest.parts().filter(is_wide).collect();
+    Region::union_all(&wide)
+}
+
+/// Centre of gravity of a region and the direction in which it is longest.
+fn axis(region: &Region) -> (Point, Point) {
+    let origin = region.rings().flatten().next().copied().unwrap_or_default();
+    let (mut area, mut first, mut second) = (0.0, Point::default(), [0.0; 3]);
+    for (a, b) in region.edges() {
+        let (a, b) = (a - origin, b - origin);
+        let twice = a.cross(b);
+        area += twice / 2.0;
+        first = first + (a + b) * (twice / 6.0);
+        second[0] += twice * (a.x * a.x + a.x * b.x + b.x * b.x) / 12.0;
+        second[1] += twice * (a.z * a.z + a.z * b.z + b.z * b.z) / 12.0;
+        second[2] += twice * (2.0 * (a.x * a.z + b.x * b.z) + a.x * b.z + b.x * a.z) / 24.0;
+    }
+    let centre = first * (1.0 / area);
+    let xx = second[0] / area - centre.x * centre.x;
+    let zz = second[1] / area - centre.z * centre.z;
+    let xz = second[2] / area - centre.x * centre.z;
+    let angle = 0.5 * (2.0 * xz).atan2(xx - zz);
+    (origin + centre, Point::new(angle.cos(), angle.sin()))
 }
 
 /// Middle of a plug, on the wall that it touches.
@@ -143,4 +251,18 @@ fn middle(region: &Region, walls: [f64; 2]) -> Point {
         0.5 * (b.min.x + b.max.x)
     };
     Point::new(x, 0.5 * (b.min.z + b.max.z))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_axis_of_a_slanted_strip() {
+        let at = |x: f64, z: f64| Point::new(x, z);
+        let strip = vec![at(0.0, 0.0), at(0.1, 0.0), at(3.1, 6.0), at(3.0, 6.0)];
+        let (centre, along) = axis(&Region::from_rings([strip]));
+        assert!(centre.distance(at(1.55, 3.0)) < 1e-6);
+        assert!((along.z / along.x - 2.0).abs() < 0.01);
+    }
 }

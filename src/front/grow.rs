@@ -232,7 +232,7 @@ impl<'a> Run<'a> {
         let sky = self.surface.top() + thickness * fastest + SKY_MARGIN_NM;
         let images = images(&self.surface, thickness);
         let left = swept(&self.surface.ambient(sky)?, &self.surface, &images);
-        let (open, closed) = shut_off(&left, sky, closed);
+        let (open, closed) = shut_off(&left, self.surface.walls, sky, closed);
         let notches = notches(&self.surface);
         self.surface = rebuilt(&open, sky, &self.surface);
         self.record(closed, &notches);

@@ -19,12 +19,6 @@ pub(super) struct Narrow {
     pub(super) width: f64,
     /// Middle between them.
     pub(super) middle: Point,
-    /// Index of the piece, chain after chain.
-    pub(super) piece: usize,
-    /// Where on the surface it is narrowest, smoothed over the neck; on or near the piece.
-    pub(super) foot: Point,
-    /// What it faces.
-    pub(super) facing: Facing,
     /// What lies behind.
     pub(super) kind: Kind,
     /// How fast the width shrinks per thickness on an open flat.
@@ -40,17 +34,6 @@ pub(super) enum Kind {
     Slit,
     /// Sides that draw together toward the bottom.
     Taper,
-}
-
-/// The other side of a narrow place.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub(super) enum Facing {
-    /// A piece of the surface itself, by index.
-    Piece(usize),
-    /// Its mirror image at the left wall.
-    Left,
-    /// Its mirror image at the right wall.
-    Right,
 }
 
 /// The medial disc at the middle of a facet.
@@ -70,8 +53,6 @@ const ACROSS: f64 = -0.5;
 const WIDER: f64 = 1e-3;
 /// Parallel sides: the width rises by less than this share over two widths.
 const SLIT_RISE: f64 = 0.1;
-/// The neck of a throat: facets whose discs exceed the least by less than this share.
-const NECK_RISE: f64 = 0.4;
 /// A slit is at least this long, over half its width.
 const SLIT_LENGTH: f64 = 4.0;
 /// Cosine between the normals of parallel sides: within twice the slope of [`SLIT_RISE`].
@@ -169,82 +150,14 @@ pub(super) fn narrow_places(surface: &Surface) -> Vec<Narrow> {
         };
         let own = discs[piece];
         let other = original(own.touches);
-        let facing = match own.touches / count {
-            0 => Facing::Left,
-            1 => Facing::Piece(other),
-            _ => Facing::Right,
-        };
         places.push(Narrow {
             width: 2.0 * own.radius,
             middle: own.centre,
-            foot: if kind == Kind::Neck {
-                flattest(&facets, &discs, &chain_of, piece)
-            } else {
-                facets[piece].middle()
-            },
-            piece,
-            facing,
             kind,
             speed: rates[piece] + rates[other],
         });
     }
     places
-}
-
-/// Where along the surface a neck is narrowest.
-///
-/// A neck about to close is nearly parallel, and which facet of it is narrowest is chance. The
-/// place is the vertex of a parabola through the radii of all facets within [`NECK_RISE`] of
-/// the least, by least squares weighted with their lengths; the least facet itself where the parabola
-/// does not open upward, or its vertex lies beyond them.
-fn flattest(facets: &[Facet], discs: &[Disc], chain_of: &[usize], piece: usize) -> Point {
-    let here = facets[piece].middle();
-    let most = discs[piece].radius * (1.0 + NECK_RISE);
-    let belongs =
-        |k: usize| chain_of[k] == chain_of[piece] && discs[k].across && discs[k].radius < most;
-    let first = (0..piece).rev().take_while(|&k| belongs(k)).last().unwrap_or(piece);
-    let last = (piece + 1..facets.len()).take_while(|&k| belongs(k)).last().unwrap_or(piece);
-    if last - first < 4 {
-        return here;
-    }
-    let mut ways = Vec::with_capacity(last - first + 1);
-    let mut way = 0.0;
-    for facet in &facets[first..=last] {
-        ways.push(way + 0.5 * facet.length());
-        way += facet.length();
-    }
-    let scale = way;
-    // Normal equations of r = a + b t + c t², t from −½ to ½.
-    let (mut m, mut v) = ([0.0; 5], [0.0; 3]);
-    for (k, &at) in ways.iter().enumerate() {
-        let (t, weight) = (at / scale - 0.5, facets[first + k].length());
-        for (power, sum) in m.iter_mut().enumerate() {
-            *sum += weight * t.powi(power as i32);
-        }
-        for (power, sum) in v.iter_mut().enumerate() {
-            *sum += weight * t.powi(power as i32) * discs[first + k].radius;
-        }
-    }
-    let det = |a: [f64; 9]| {
-        a[0] * (a[4] * a[8] - a[5] * a[7]) - a[1] * (a[3] * a[8] - a[5] * a[6])
-            + a[2] * (a[3] * a[7] - a[4] * a[6])
-    };
-    let whole = det([m[0], m[1], m[2], m[1], m[2], m[3], m[2], m[3], m[4]]);
-    let b = det([m[0], v[0], m[2], m[1], v[1], m[3], m[2], v[2], m[4]]) / whole;
-    let c = det([m[0], m[1], v[0], m[1], m[2], v[1], m[2], m[3], v[2]]) / whole;
-    let at = (0.5 - 0.5 * b / c) * scale;
-    if !(c > 0.0 && at > 0.0 && at < way) {
-        return here;
-    }
-    let mut begin = 0.0;
-    for facet in &facets[first..=last] {
-        let length = facet.length();
-        if at <= begin + length && length > 0.0 {
-            return facet.from + (facet.to - facet.from) * ((at - begin) / length);
-        }
-        begin += length;
-    }
-    here
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
