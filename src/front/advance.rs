@@ -12,6 +12,7 @@
 //! neighbours extended until they meet. Cost: linear. Steps must stay well below the width
 //! of any throat, or fronts pass through each other.
 
+use super::outline::Facet;
 use super::surface::{Chain, Piece, Surface};
 use crate::geom::Point;
 
@@ -22,6 +23,9 @@ const CONCAVE_BLEND: [f64; 2] = [0.17, 0.5];
 /// Offset lines nearer to parallel than this have no crossing to speak of.
 const LEAST_SINE: f64 = 1e-3;
 
+/// A convex corner sharper than 60 degrees, as the cosine between normals, is swept by its sides alone.
+const SHARP: f64 = -0.5;
+
 /// Sharper wedges at a mirror wall than this slope do not move faster along it.
 const STEEPEST: f64 = 0.02;
 
@@ -31,12 +35,39 @@ pub(super) fn advanced(surface: &Surface, thickness: f64) -> Surface {
     Surface { chains: chains.filter(|c| !c.pieces.is_empty()).collect(), walls: surface.walls }
 }
 
-/// Where the ends of each piece go in a step, chain by chain, also of pieces that turn over.
+/// Where the ends of each piece go in a step, chain by chain: along its own normal where the ambient
+/// is convex, for sweeping as a set needs no more; where offset facets meet elsewhere.
 pub(super) fn images(surface: &Surface, thickness: f64) -> Vec<Vec<[Point; 2]>> {
+    let own = |piece: &Piece, at: Point| at + piece.facet.normal * (thickness * piece.rate);
+    let between = |a: &Piece, b: &Piece| {
+        let is_convex = b.facet.normal.cross(a.facet.normal) > 0.0;
+        let is_blunt = a.facet.normal.dot(b.facet.normal) > SHARP;
+        (is_convex && is_blunt).then(|| vertex(a, b, thickness))
+    };
+    let at_wall = |piece: &Piece, at: Point| {
+        let inward = if at.x - surface.walls[0] < surface.walls[1] - at.x { 1.0 } else { -1.0 };
+        let leans_away = piece.facet.normal.x * inward > 0.0 && piece.facet.normal.z > 0.5;
+        if leans_away { wall_vertex(piece, at, thickness) } else { own(piece, at) }
+    };
     let of = |chain: &Chain| {
-        let (links, end) = links(chain, thickness);
-        let tos = links.iter().skip(1).map(|l| l.from).chain([end]).collect::<Vec<_>>();
-        links.iter().zip(tos).map(|(l, to)| [l.from, to]).collect()
+        let n = chain.pieces.len();
+        let ends = |k: usize| {
+            let piece = &chain.pieces[k];
+            let Facet { from, to, .. } = piece.facet;
+            let open = !chain.closed;
+            let first = if open && k == 0 {
+                at_wall(piece, from)
+            } else {
+                between(&chain.pieces[(k + n - 1) % n], piece).unwrap_or_else(|| own(piece, from))
+            };
+            let last = if open && k + 1 == n {
+                at_wall(piece, to)
+            } else {
+                between(piece, &chain.pieces[(k + 1) % n]).unwrap_or_else(|| own(piece, to))
+            };
+            [first, last]
+        };
+        (0..n).map(ends).collect()
     };
     surface.chains.iter().map(of).collect()
 }
@@ -205,7 +236,6 @@ fn meets_wall(piece: &Piece, x: f64, fallback: Point, thickness: f64) -> Point {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::front::outline::Facet;
 
     fn chain(points: &[(f64, f64)], rates: &[f64]) -> Chain {
         let piece = |(p, rate): (&[(f64, f64)], &f64)| Piece {

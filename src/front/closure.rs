@@ -3,10 +3,9 @@
 //! Method: morphological openings of the ambient around the throat with a disc. What a disc a
 //! little wider than the closure width does not reach is the neck. Where the neck parts the
 //! ambient in two it is cut across at its middle: a neck about to close is nearly parallel, and
-//! which place of it is narrowest is chance, while its middle is well determined. Where
-//! nothing lies behind, what a disc of the closure width does not reach turns solid. A
-//! part that does not reach the sky any more is a void, less what is narrower than the
-//! closure width. The surface of the rest is read off its outline ([`super::rebuild`]), so
+//! which place of it is narrowest is chance, while its middle is well determined. Toward the sky
+//! the neck turns solid at once, and a slit with nothing behind it does. A part that does not reach
+//! the sky any more is a void, less what is narrower than the closure width. The surface of the rest is read off its outline ([`super::rebuild`]), so
 //! that any number of throats may close at once. Cost: some booleans on the outline.
 
 use super::FrontError;
@@ -17,8 +16,6 @@ use crate::num::tolerance::{ON_EDGE_NM, SKY_MARGIN_NM};
 
 /// Widths up to this, in closure widths, belong to the neck of a throat that closes.
 const NECK: f64 = 1.15;
-/// What turns solid where nothing lies behind: parallel sides at just the closure width do.
-const SLIT: f64 = 1.002;
 /// What a void loses: parallel sides at just the closure width stay.
 const SEAM: f64 = 0.98;
 /// Thickness of a cut, in closure widths.
@@ -33,6 +30,8 @@ const CRUMB: f64 = 1e-3;
 const VOID: f64 = 2.0;
 /// Regions nearer than this touch, in closure widths.
 const TOUCH: f64 = 0.02;
+/// Vertices nearer than this to the chord of their neighbours are left out, in closure widths.
+const THINNED: f64 = 1e-3;
 /// How far around a throat its neck is looked for, in closure widths and as a share of the
 /// ambient's height; and how much further the disc is moved there, in closure widths.
 const REACH: f64 = 16.0;
@@ -58,24 +57,29 @@ pub(super) fn close(
 ) -> Result<Vec<Closed>, FrontError> {
     let ambient = surface.ambient(sky)?;
     let at = Place { ambient: &ambient, walls: surface.walls, throat, sky, width };
-    let mut plugs = at.cuts();
-    if plugs.is_empty() {
-        plugs = at.tips();
-    }
+    let narrow = at.narrower_than(NECK * width);
+    let necks: Vec<&Region> = at.parting(&narrow);
+    let cuts: Vec<Region> = necks.iter().map(|neck| at.cut(neck)).collect();
+    let (open, shut) = by_sky(&ambient.difference(&Region::union_all(&cuts)), sky);
+    // Toward the sky a closed neck fills up at once, and so does a slit with nothing behind it.
+    let tips = narrow.iter().filter(|part| necks.is_empty() && at.is_tip(part));
+    let mut plugs: Vec<Region> = necks.iter().copied().chain(tips).cloned().collect();
     if plugs.is_empty() {
         return Ok(Vec::new());
     }
-    let rest = ambient.difference(&Region::union_all(&plugs));
-    let (open, shut) = by_sky(&rest, sky);
+    // A little more, so that no crack stays beside a plug.
+    let filled = Region::union_all(&plugs).grown(THINNED * width, ARC_RAD);
+    let (open, cut_off) = by_sky(&Region::union_all(&open).difference(&filled), sky);
     let mut closed = Vec::new();
-    for part in shut {
+    for part in shut.into_iter().chain(cut_off) {
         let void = without_seams(&part, surface.walls, width);
         if void.area() > VOID * width * width {
             let grown = part.grown(TOUCH * width, ARC_RAD);
             let touches = |plug: &Region| !plug.intersection(&grown).is_empty();
-            let plug = plugs.iter().position(touches).map(|k| plugs.remove(k)).unwrap_or_default();
-            let throat = middle(if plug.is_empty() { &void } else { &plug }, surface.walls);
-            closed.push(Closed { throat, void, plug });
+            let at = cuts.iter().find(|cut| touches(cut)).or(plugs.iter().find(|p| touches(p)));
+            let throat = middle(at.unwrap_or(&void), surface.walls);
+            let plug = plugs.iter().position(touches).map(|k| plugs.remove(k));
+            closed.push(Closed { throat, void, plug: plug.unwrap_or_default() });
         }
     }
     for plug in plugs {
@@ -84,7 +88,7 @@ pub(super) fn close(
     let [open] = &open[..] else {
         return Err(FrontError::Inconsistent("the sky is not one open space"));
     };
-    *surface = rebuilt(open, sky, surface);
+    *surface = rebuilt(open, sky, surface, THINNED * width);
     Ok(closed)
 }
 
@@ -121,16 +125,14 @@ struct Place<'a> {
 }
 
 impl Place<'_> {
-    /// Cuts across the necks that part the ambient.
-    fn cuts(&self) -> Vec<Region> {
-        let necks = self.narrower_than(NECK * self.width);
-        let wide: Vec<Region> =
-            self.ambient.difference(&Region::union_all(&necks)).parts().collect();
+    /// Those of the narrow parts that part the ambient.
+    fn parting<'r>(&self, narrow: &'r [Region]) -> Vec<&'r Region> {
+        let wide: Vec<Region> = self.ambient.difference(&Region::union_all(narrow)).parts().collect();
         let parts = |neck: &&Region| {
             let grown = neck.grown(TOUCH * self.width, ARC_RAD);
             wide.iter().filter(|side| !side.intersection(&grown).is_empty()).count() > 1
         };
-        necks.iter().filter(parts).map(|neck| self.cut(neck)).collect()
+        narrow.iter().filter(parts).collect()
     }
 
     /// A thin part of a neck across it, at its middle.
@@ -151,20 +153,18 @@ impl Place<'_> {
             centre + thick + long,
             centre - thick + long,
         ];
-        // The slab may meet other narrow parts beside: only the neck is cut.
-        let grown = neck.grown(TOUCH * self.width, ARC_RAD);
-        Region::from_rings([slab]).intersection(&grown).intersection(self.ambient)
+        // The slab may meet other narrow parts beside: only the neck is cut, and a little of
+        // what lies beside it, so that no crack stays.
+        Region::from_rings([slab]).intersection(&neck.grown(TOUCH * self.width, ARC_RAD))
     }
 
-    /// The narrow parts at the throat itself.
-    fn tips(&self) -> Vec<Region> {
+    /// Whether a narrow part lies at the throat and is more than a rounded corner.
+    fn is_tip(&self, part: &Region) -> bool {
         let (near, least) = (2.0 * self.width, TIP * self.width * self.width);
-        let is_near = |part: &Region| {
-            part.contains(self.throat)
-                || part.edges().any(|(a, b)| self.throat.distance_to_segment(a, b) < near)
-        };
-        let narrow = self.narrower_than(SLIT * self.width);
-        narrow.into_iter().filter(|part| part.area() > least && is_near(part)).collect()
+        let mut edges = part.edges();
+        part.area() > least
+            && (part.contains(self.throat)
+                || edges.any(|(a, b)| self.throat.distance_to_segment(a, b) < near))
     }
 
     /// The parts of the ambient around the throat that a disc of `diameter` does not reach.

@@ -37,6 +37,8 @@ const CONFORMAL_FAN_RAD: f64 = 0.02;
 const MOST_EXTRAPOLATION: f64 = 0.2;
 /// More facets than this are refused.
 const MOST_FACETS: usize = 20_000;
+/// Vertices of a surface set right are left out this near to a chord, over the finest facet.
+const THINNED: f64 = 0.05;
 /// Closures of one step; what is left is taken up in the next.
 const MOST_CLOSURES: usize = 1000;
 /// Trials for the thickness at which a throat closes.
@@ -184,7 +186,8 @@ impl<'a> Run<'a> {
         }
         let closed = self.resolution.closure_width_nm;
         let mut thickness = remaining.min(STEP_OF_FACET * self.mesh.facet_nm / fastest);
-        for throat in self.narrow.iter().filter(|throat| throat.kind != Kind::Taper) {
+        let closing = |throat: &&Narrow| throat.kind != Kind::Taper && throat.width > closed;
+        for throat in self.narrow.iter().filter(closing) {
             let speed = if throat.speed > 0.0 { throat.speed } else { 2.0 * fastest };
             let share = STEP_OF_THROAT * throat.width / speed;
             // The last step is laid a little beyond the closure.
@@ -229,12 +232,13 @@ impl<'a> Run<'a> {
             self.narrow = narrow;
             return Ok(());
         }
+        if std::env::var("GW").is_ok() { eprintln!("PASS at {} n {}", self.grown, self.surface.len()); }
         let sky = self.surface.top() + thickness * fastest + SKY_MARGIN_NM;
         let images = images(&self.surface, thickness);
         let left = swept(&self.surface.ambient(sky)?, &self.surface, &images);
         let (open, closed) = shut_off(&left, self.surface.walls, sky, closed);
         let notches = notches(&self.surface);
-        self.surface = rebuilt(&open, sky, &self.surface);
+        self.surface = rebuilt(&open, sky, &self.surface, THINNED * self.mesh.least_nm);
         self.record(closed, &notches);
         self.narrow = narrow_places(&self.surface);
         Ok(())

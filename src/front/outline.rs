@@ -67,6 +67,7 @@ impl Outline {
         let ambient = open
             .parts()
             .find(reaches_sky)
+            .map(|part| part.without_hairs())
             .ok_or(FrontError::Inconsistent("no ambient above the solids"))?;
         if ambient.bounds().is_some_and(|b| b.min.z <= bounds.min.z + ON_EDGE_NM) {
             return Err(FrontError::Inconsistent("the scene is open at its bottom"));

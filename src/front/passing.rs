@@ -8,12 +8,12 @@
 
 use super::surface::Surface;
 use crate::geom::{Point, Region};
+use crate::num::tolerance::ON_EDGE_NM;
 
 /// Whether no two pieces cross, and all stay between the walls.
 pub(super) fn is_sound(surface: &Surface) -> bool {
-    const OUTSIDE_NM: f64 = 1e-9;
     let [left, right] = surface.walls;
-    let within = |p: Point| p.x >= left - OUTSIDE_NM && p.x <= right + OUTSIDE_NM;
+    let within = |p: Point| p.x >= left - ON_EDGE_NM && p.x <= right + ON_EDGE_NM;
     struct Span {
         a: Point,
         b: Point,

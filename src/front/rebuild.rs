@@ -12,8 +12,9 @@ use crate::num::tolerance::ON_EDGE_NM;
 /// Edges shorter than this have lost their direction to the polygon grid, in nm.
 const SHORTEST_NM: f64 = 16.0 * ON_EDGE_NM;
 
-/// The surface of an ambient that reaches the sky, knowing what `old` knew.
-pub(super) fn rebuilt(ambient: &Region, sky: f64, old: &Surface) -> Surface {
+/// The surface of an ambient that reaches the sky, knowing what `old` knew; vertices within
+/// `slack_nm` of the chord of their neighbours are left out.
+pub(super) fn rebuilt(ambient: &Region, sky: f64, old: &Surface, slack_nm: f64) -> Surface {
     let [left, right] = old.walls;
     let on = |v: f64, at: f64| (v - at).abs() < ON_EDGE_NM;
     let is_frame = |a: Point, b: Point| {
@@ -22,13 +23,13 @@ pub(super) fn rebuilt(ambient: &Region, sky: f64, old: &Surface) -> Surface {
             || (on(a.z, sky) && on(b.z, sky))
     };
     let mut chains = Vec::new();
-    for ring in ambient.rings() {
+    for ring in ambient.without_hairs().rings() {
         let n = ring.len();
         let edge = |k: usize| (ring[k % n], ring[(k + 1) % n]);
         let first = (0..n).find(|&k| is_frame(edge(k).0, edge(k).1));
         let mut points: Vec<Point> = Vec::new();
         let mut finish = |points: &mut Vec<Point>, closed: bool| {
-            let points = without_short(std::mem::take(points), closed);
+            let points = thinned(&std::mem::take(points), slack_nm);
             chains.extend(chain(&points, closed, old));
         };
         for k in first.map_or(0, |k| k + 1)..first.map_or(0, |k| k + 1) + n {
@@ -49,17 +50,25 @@ pub(super) fn rebuilt(ambient: &Region, sky: f64, old: &Surface) -> Surface {
     Surface { chains, walls: old.walls }
 }
 
-fn without_short(points: Vec<Point>, closed: bool) -> Vec<Point> {
-    let mut kept: Vec<Point> = Vec::with_capacity(points.len());
-    for &p in &points {
-        if kept.last().is_none_or(|last| last.distance(p) > SHORTEST_NM) {
-            kept.push(p);
+/// The points without those that lie within `slack_nm` of the chord of what is kept.
+fn thinned(points: &[Point], slack_nm: f64) -> Vec<Point> {
+    let last = points.len() - 1;
+    let mut kept = vec![points[0]];
+    let mut at = 0;
+    while at < last {
+        let fits = |end: usize| {
+            let chord = points[at].distance(points[end]);
+            chord > SHORTEST_NM
+                && points[at + 1..end]
+                    .iter()
+                    .all(|p| p.distance_to_segment(points[at], points[end]) <= slack_nm)
+        };
+        let mut end = at + 1;
+        while end < last && (points[at].distance(points[end]) <= SHORTEST_NM || fits(end + 1)) {
+            end += 1;
         }
-    }
-    let last = points[points.len() - 1];
-    if kept.len() > 1 {
-        let end = kept.len() - 1;
-        kept[end] = if closed { kept[0] } else { last };
+        kept.push(points[end]);
+        at = end;
     }
     kept
 }

@@ -53,6 +53,8 @@ impl Transport {
             gas =
                 if guess.len() == facets.len() { guess.to_vec() } else { exchange.sky().to_vec() };
             exchange.gas(&vec![sticking; facets.len()], &mut gas)?;
+            // In the deepest shade the flux is below the residual, which has either sign.
+            gas.iter_mut().for_each(|flux| *flux = flux.max(0.0));
             rate.iter_mut().zip(&gas).for_each(|(rate, flux)| *rate += neutral * flux);
         }
         if directional > 0.0 {
