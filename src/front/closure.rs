@@ -16,10 +16,10 @@ use crate::num::tolerance::{ON_EDGE_NM, SKY_MARGIN_NM};
 
 /// Widths up to this, in closure widths, belong to the neck of a throat that closes.
 const NECK: f64 = 1.15;
-/// What a void loses: parallel sides at just the closure width stay.
-const SEAM: f64 = 0.98;
+/// What a void loses, in closure widths: parallel sides at just the closure width go too.
+const SEAM: f64 = 1.002;
 /// Thickness of a cut, in closure widths.
-const CUT: f64 = 0.01;
+const CUT: f64 = 0.1;
 /// Turn of the arcs of a disc, in radians.
 const ARC_RAD: f64 = 0.4;
 /// Narrow parts above this area are tips, below it the rounding of corners; squared closure widths.
@@ -63,21 +63,21 @@ pub(super) fn close(
     let (open, shut) = by_sky(&ambient.difference(&Region::union_all(&cuts)), sky);
     // Toward the sky a closed neck fills up at once, and so does a slit with nothing behind it.
     let tips = narrow.iter().filter(|part| necks.is_empty() && at.is_tip(part));
-    let mut plugs: Vec<Region> = necks.iter().copied().chain(tips).cloned().collect();
+    // A little more of it, so that no crack stays beside.
+    let plug = |part: &Region| part.grown(THINNED * width, ARC_RAD);
+    let mut plugs: Vec<Region> = necks.iter().copied().chain(tips).map(plug).collect();
     if plugs.is_empty() {
         return Ok(Vec::new());
     }
-    // A little more, so that no crack stays beside a plug.
-    let filled = Region::union_all(&plugs).grown(THINNED * width, ARC_RAD);
+    let filled = Region::union_all(&plugs);
     let (open, cut_off) = by_sky(&Region::union_all(&open).difference(&filled), sky);
     let mut closed = Vec::new();
     for part in shut.into_iter().chain(cut_off) {
-        let void = without_seams(&part, surface.walls, width);
-        if void.area() > VOID * width * width {
-            let grown = part.grown(TOUCH * width, ARC_RAD);
-            let touches = |plug: &Region| !plug.intersection(&grown).is_empty();
-            let at = cuts.iter().find(|cut| touches(cut)).or(plugs.iter().find(|p| touches(p)));
-            let throat = middle(at.unwrap_or(&void), surface.walls);
+        let void = without_seams(&part, &filled, surface.walls, width);
+        if !void.is_empty() {
+            let touches = |plug: &Region| at.touches(plug, &part);
+            let cut = cuts.iter().chain(&plugs).find(|solid| touches(solid));
+            let throat = middle(cut.unwrap_or(&void), surface.walls);
             let plug = plugs.iter().position(touches).map(|k| plugs.remove(k));
             closed.push(Closed { throat, void, plug: plug.unwrap_or_default() });
         }
@@ -100,8 +100,8 @@ pub(super) fn shut_off(
     width: f64,
 ) -> (Region, Vec<Closed>) {
     let (open, shut) = by_sky(ambient, sky);
-    let voids = shut.iter().map(|part| without_seams(part, walls, width));
-    let closed = voids.filter(|void| void.area() > VOID * width * width).map(|void| {
+    let voids = shut.iter().map(|part| without_seams(part, &Region::empty(), walls, width));
+    let closed = voids.filter(|void| !void.is_empty()).map(|void| {
         let Point { x, .. } = middle(&void, walls);
         let z = void.bounds().map_or(0.0, |b| b.max.z);
         Closed { throat: Point::new(x, z), void, plug: Region::empty() }
@@ -127,12 +127,15 @@ struct Place<'a> {
 impl Place<'_> {
     /// Those of the narrow parts that part the ambient.
     fn parting<'r>(&self, narrow: &'r [Region]) -> Vec<&'r Region> {
-        let wide: Vec<Region> = self.ambient.difference(&Region::union_all(narrow)).parts().collect();
-        let parts = |neck: &&Region| {
-            let grown = neck.grown(TOUCH * self.width, ARC_RAD);
-            wide.iter().filter(|side| !side.intersection(&grown).is_empty()).count() > 1
-        };
+        let wide: Vec<Region> =
+            self.ambient.difference(&Region::union_all(narrow)).parts().collect();
+        let parts =
+            |neck: &&Region| wide.iter().filter(|side| self.touches(neck, side)).count() > 1;
         narrow.iter().filter(parts).collect()
+    }
+
+    fn touches(&self, a: &Region, b: &Region) -> bool {
+        a.distance(b).is_some_and(|gap| gap < TOUCH * self.width)
     }
 
     /// A thin part of a neck across it, at its middle.
@@ -196,8 +199,9 @@ fn opened(region: &Region, frame: &Region, radius: f64) -> Region {
     region.difference(&solid.grown(radius, ARC_RAD)).grown(radius, ARC_RAD)
 }
 
-/// A void without the parts that are narrower than the closure width.
-fn without_seams(region: &Region, walls: [f64; 2], width: f64) -> Region {
+/// A part of the ambient without what is narrower than the closure width, necks that were cut
+/// excepted; empty where nothing wider than these is left.
+fn without_seams(region: &Region, necks: &Region, walls: [f64; 2], width: f64) -> Region {
     // Beyond a wall the region goes on as its image.
     let touches = |wall: f64| region.rings().flatten().any(|p| (p.x - wall).abs() < ON_EDGE_NM);
     let images = walls.into_iter().filter(|&wall| touches(wall));
@@ -209,14 +213,14 @@ fn without_seams(region: &Region, walls: [f64; 2], width: f64) -> Region {
         [bounds.min.x - margin, bounds.max.x + margin],
         [bounds.min.z - margin, bounds.max.z + margin],
     );
-    let seams = region.difference(&opened(&whole, &frame, 0.5 * SEAM * width));
+    let seams = region.difference(&opened(&whole, &frame, 0.5 * SEAM * width)).difference(necks);
     // What an opening rounds off in corners is no seam.
     let is_seam = |part: &Region| part.area() > TIP * width * width;
     let seams: Vec<Region> = seams.parts().filter(is_seam).collect();
     let rest = region.difference(&Region::union_all(&seams));
-    let is_wide = |part: &Region| part.area() > VOID * width * width;
-    let wide: Vec<Region> = rest.parts().filter(is_wide).collect();
-    Region::union_all(&wide)
+    let is_void = |part: &Region| part.difference(necks).area() > VOID * width * width;
+    let voids: Vec<Region> = rest.parts().filter(is_void).collect();
+    Region::union_all(&voids)
 }
 
 /// Centre of gravity of a region and the direction in which it is longest.

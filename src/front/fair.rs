@@ -83,6 +83,8 @@ mod tests {
     fn corners_stay() {
         let points = [(0.0, 5.0), (1.0, 5.0), (2.0, 5.0), (2.0, 4.0), (2.0, 3.0), (3.0, 3.0)];
         let after = faired_line(&points);
-        assert!(after.iter().zip(points).all(|(p, q)| (p.x - q.0).abs() + (p.z - q.1).abs() < 1e-12));
+        assert!(
+            after.iter().zip(points).all(|(p, q)| (p.x - q.0).abs() + (p.z - q.1).abs() < 1e-12)
+        );
     }
 }

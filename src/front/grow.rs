@@ -43,7 +43,7 @@ const THINNED: f64 = 0.05;
 const MOST_CLOSURES: usize = 1000;
 /// Trials for the thickness at which a throat closes.
 const MOST_TRIALS: usize = 24;
-/// Least step, over the finest facet: what comes closer than that may pass, and is set right.
+/// Least step, over the finest facet and the closure width: what comes closer than that may pass, and is set right.
 const LEAST_STEP: f64 = 0.1;
 /// More steps than this are refused.
 const MOST_STEPS: usize = 20_000;
@@ -80,7 +80,6 @@ struct Run<'a> {
     last_step: f64,
     closures: Vec<Closure>,
     tracks: Vec<Track>,
-    count: usize,
 }
 
 impl<'a> Run<'a> {
@@ -117,7 +116,6 @@ impl<'a> Run<'a> {
             last_step: 0.0,
             closures: Vec::new(),
             tracks: Vec::new(),
-            count: 0,
         })
     }
 
@@ -135,7 +133,6 @@ impl<'a> Run<'a> {
                 let facets = self.surface.len();
                 return Err(FrontError::TooFine { facets, limit: MOST_FACETS });
             }
-            self.count += self.surface.len();
             let before = self.solve_rates()?;
             self.step(thickness - self.grown, &before)?;
             self.close_throats()?;
@@ -147,7 +144,7 @@ impl<'a> Run<'a> {
                 goes_on
             });
         }
-        self.finish(steps)
+        self.finish()
     }
 
     /// Solves the flux; what each piece had before is returned.
@@ -194,7 +191,7 @@ impl<'a> Run<'a> {
             let last = 1.05 * (throat.width - closed) / speed;
             thickness = thickness.min(if last < 1.5 * share { last } else { share });
         }
-        let least = LEAST_STEP * self.mesh.least_nm / fastest;
+        let least = LEAST_STEP * self.mesh.least_nm.min(closed) / fastest;
         thickness = thickness.max(least.min(remaining));
         self.extrapolate(rates_before, thickness);
         let mut next = self.moved(thickness);
@@ -232,7 +229,6 @@ impl<'a> Run<'a> {
             self.narrow = narrow;
             return Ok(());
         }
-        if std::env::var("GW").is_ok() { eprintln!("PASS at {} n {}", self.grown, self.surface.len()); }
         let sky = self.surface.top() + thickness * fastest + SKY_MARGIN_NM;
         let images = images(&self.surface, thickness);
         let left = swept(&self.surface.ambient(sky)?, &self.surface, &images);
@@ -286,8 +282,7 @@ impl<'a> Run<'a> {
         }
     }
 
-    fn finish(self, steps: usize) -> Result<Growth, FrontError> {
-        if std::env::var("GW").is_ok() { eprintln!("steps {steps} n {}", self.count / steps.max(1)); }
+    fn finish(self) -> Result<Growth, FrontError> {
         let sky = self.surface.top().max(self.start.top()) + SKY_MARGIN_NM;
         let between = self.start.ambient(sky)?.difference(&self.surface.ambient(sky)?);
         let voids = Region::union_all(self.closures.iter().map(|closure| &closure.void));

@@ -8,7 +8,7 @@
 
 use super::surface::Surface;
 use crate::geom::{Point, Region};
-use crate::num::tolerance::ON_EDGE_NM;
+use crate::num::tolerance::{ON_EDGE_NM, SAME_LINE_NM};
 
 /// Whether no two pieces cross, and all stay between the walls.
 pub(super) fn is_sound(surface: &Surface) -> bool {
@@ -51,19 +51,22 @@ pub(super) fn is_sound(surface: &Surface) -> bool {
     true
 }
 
-/// Whether two segments cross in their insides.
+/// Whether two segments cross by more than the rounding of the polygon grid.
 fn cross(a: Point, b: Point, c: Point, d: Point) -> bool {
-    let side = |p: Point, q: Point, r: Point| (q - p).cross(r - p);
-    side(a, b, c) * side(a, b, d) < 0.0 && side(c, d, a) * side(c, d, b) < 0.0
+    let sides = |p: Point, q: Point| [c, d, a, b].map(|r| (q - p).cross(r - p));
+    let ([at_c, at_d, ..], [.., at_a, at_b]) = (sides(a, b), sides(c, d));
+    let deepest = |first: f64, second: f64, length: f64| {
+        first.abs().min(second.abs()) > SAME_LINE_NM * length
+    };
+    at_c * at_d < 0.0
+        && at_a * at_b < 0.0
+        && deepest(at_c, at_d, a.distance(b))
+        && deepest(at_a, at_b, c.distance(d))
 }
 
 /// The ambient left by a step in which each piece goes from its place to its image; `images` are
 /// the ends of the images, chain by chain, piece by piece.
-pub(super) fn swept(
-    ambient: &Region,
-    surface: &Surface,
-    images: &[Vec<[Point; 2]>],
-) -> Region {
+pub(super) fn swept(ambient: &Region, surface: &Surface, images: &[Vec<[Point; 2]>]) -> Region {
     let quads = surface.chains.iter().zip(images).flat_map(|(chain, images)| {
         chain.pieces.iter().zip(images).map(|(piece, [from, to])| {
             let (a, b) = (piece.facet.from, piece.facet.to);

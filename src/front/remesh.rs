@@ -171,7 +171,9 @@ impl Mesh {
             let is_small = own > LEAST_LENGTH_NM
                 && own < a.facet.length().min(c.facet.length())
                 && own < COLLAPSE * self.size_at(b.facet.from, throats);
-            if alike && free && is_small && turn(&a, &c).abs() < RUNS_ON_RAD {
+            // Both turns to one side are a fan or a round corner.
+            let is_step = turn(&a, &b) * turn(&b, &c) < 0.0 && turn(&a, &c).abs() < RUNS_ON_RAD;
+            if alike && free && is_small && is_step {
                 let middle = b.facet.middle();
                 chain.pieces[k - 1] = a.with_ends(a.facet.from, middle);
                 chain.pieces[k + 1] = c.with_ends(middle, c.facet.to);

@@ -172,7 +172,12 @@ impl Scenery {
 
     /// Enters segments, outward from the eye.
     fn enter(&self, eye: &Eye, range: std::ops::Range<usize>, view: &mut Side) {
-        let mut last = Sight { point: Point::new(f64::NAN, 0.0), offset: Point::default(), sine: 0.0, height: 0.0 };
+        let mut last = Sight {
+            point: Point::new(f64::NAN, 0.0),
+            offset: Point::default(),
+            sine: 0.0,
+            height: 0.0,
+        };
         let onward = view.sign > 0.0;
         for k in range.clone() {
             let at = if onward { k } else { range.start + range.end - 1 - k };

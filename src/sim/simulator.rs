@@ -31,7 +31,7 @@ pub struct Grain {
 
 impl Default for Grain {
     fn default() -> Self {
-        Self { facet: 1.0 / 20.0 }
+        Self { facet: 1.0 / 10.0 }
     }
 }
 
