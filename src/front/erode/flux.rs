@@ -9,6 +9,9 @@ use super::surface::{Facet, Frame};
 use super::sweep::Flux;
 use crate::front::{Character, FrontError, Transport};
 
+/// Lobes of a higher exponent are sharp.
+const SHARP: f64 = 30.0;
+
 /// A process, ready to be asked for the flux on any surface.
 pub(super) struct Source {
     character: Character,
@@ -34,6 +37,12 @@ impl Source {
     /// and facets may be as rough as it is known.
     pub(super) fn is_diffuse(&self) -> bool {
         self.diffuse.is_some()
+    }
+
+    /// Whether lobes cast shadows about as sharp as a facet: the flux on one facet tells little
+    /// of that on its neighbour then.
+    pub(super) fn is_sharp(&self) -> bool {
+        self.character.directional > 0.0 && self.character.exponent.is_some_and(|p| p > SHARP)
     }
 
     /// Flux on each facet. Errors: the gas did not converge.
