@@ -196,7 +196,13 @@ fn remove_turned(
         } else {
             let next = if last { 0 } else { k };
             let before = if k == 0 { links.len() - 1 } else { k - 1 };
-            let met = meeting(&links[before].piece, &links[next].piece, middle, thickness);
+            let (a, b) = (&links[before].piece, &links[next].piece);
+            let met = meeting(a, b, middle, thickness);
+            // Lines that are all but parallel may cross far beyond both.
+            let most = gone.from.distance(to) + thickness * a.rate.max(b.rate);
+            let ahead = |facet: &Facet, way: Point| way.cross(facet.normal) > most;
+            let is_far = ahead(&a.facet, met - gone.from) || ahead(&b.facet, to - met);
+            let met = if is_far { middle } else { met };
             links[next].from = met;
             if closed && next == 0 {
                 *end = met;

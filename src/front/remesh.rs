@@ -30,9 +30,10 @@ const GRADING: f64 = 0.15;
 /// Longer than this times the wanted length is split, shorter than that is joined.
 const SPLIT: f64 = 1.4;
 const JOIN: f64 = 0.45;
-/// Convex corners open into a fan above this turn, in radians, where both their edges exceed this
-/// share of the facet length: less is a smooth surface, or the noise of one.
+/// Convex corners open into a fan above this turn, in radians; where one of their edges is below
+/// this share of the facet length, only sharper ones: less may be the noise of a smooth surface.
 const OPENS_RAD: f64 = 0.4;
+const OPENS_SHORT_RAD: f64 = 0.9;
 const EDGE: f64 = 0.25;
 /// A piece shorter than this times the wanted length is taken out where its neighbours run on.
 const COLLAPSE: f64 = 0.15;
@@ -95,7 +96,8 @@ impl Mesh {
             return self.sweep(b, b.facet.from, first, turn + quarter, false);
         }
         let is_long = a.facet.length().min(b.facet.length()) > EDGE * self.facet_nm;
-        if turn > (1.5 * self.fan_rad).max(OPENS_RAD) && is_long {
+        let opens = if is_long { OPENS_RAD } else { OPENS_SHORT_RAD };
+        if turn > (1.5 * self.fan_rad).max(opens) {
             let steps = (turn / self.fan_rad).ceil();
             return self.arc(a, b.facet.from, n, turn / steps, 1..steps as usize);
         }
