@@ -219,6 +219,9 @@ impl Scenery {
             seen.insert(first, new);
             return;
         }
+        if self.is_behind(eye, &new, &seen[first..], *sign) {
+            return;
+        }
         let mut pieces: Vec<Seen> = Vec::new();
         let mut cursor = new.from;
         let mut last = first;
@@ -263,6 +266,23 @@ impl Scenery {
             });
             seen.splice(first..last, pieces);
         }
+    }
+
+    /// Whether pieces cover all of a new one, and are nearer: so it is with nearly all that is entered
+    /// late.
+    fn is_behind(&self, eye: &Eye, new: &Seen, seen: &[Seen], sign: f64) -> bool {
+        let mut cursor = new.from;
+        for old in seen.iter().take_while(|old| old.from < new.to) {
+            let (begin, end) = (old.from.max(new.from), old.to.min(new.to));
+            let middle = sign * 0.5 * (begin + end);
+            let is_nearer = end - begin > SLIVER
+                && self.depth(eye, new.segment, middle) < self.depth(eye, old.segment, middle);
+            if old.from > cursor || is_nearer {
+                return false;
+            }
+            cursor = old.to;
+        }
+        cursor >= new.to
     }
 
     /// Distance to a segment's line in the direction of a sine.
