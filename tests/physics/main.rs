@@ -14,4 +14,5 @@ mod dense_array;
 mod flux;
 mod monte_carlo;
 mod moving;
+mod rows;
 mod scenes;
