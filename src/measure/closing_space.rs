@@ -74,7 +74,8 @@ pub(super) fn closing_space(traced: &Traced, grow: &Grow) -> Result<Reading, Mea
                 return Ok(Reading::Unclear(Unclear::Topology));
             };
             let fine = coarse - excess / slope;
-            let error = GrowthError::new(traced.flow.library.settings.closure_width_nm);
+            let error =
+                GrowthError::new(traced.flow.library.settings.closure_width_nm, traced.facet_nm);
             return Ok(Reading::Known(error.length(coarse, fine)));
         }
         space_nm += step_nm;
@@ -168,7 +169,8 @@ mod tests {
                     *thickness_nm = closes_nm;
                 }
             }
-            Ok(vec![CellTrace { cell: sim::Cell { sites: variant.sites() }, stages }])
+            let cell = sim::Cell { sites: variant.sites() };
+            Ok(vec![CellTrace { cell, facet_nm: 0.0, stages }])
         }
     }
 
@@ -182,6 +184,7 @@ mod tests {
             site: &flow.variants[0].sites()[0],
             coarse: &stages,
             fine: &stages,
+            facet_nm: 0.0,
         };
         closing_space(&traced, grow).unwrap()
     }

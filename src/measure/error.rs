@@ -11,27 +11,33 @@
 //! closure width; a neck is nearly parallel, so an error of the width moves the top by far more:
 //! what it moves on the void's own outline is added to all that hangs on the top.
 //!
-//! It fails where two resolutions agree by chance; the floor, and the third resolution that the
-//! pipeline asks for while the wanted accuracy is missed, guard against that.
+//! Two resolutions may agree by chance: which facets meet in a closing neck scatters the thickness at
+//! closure and the height of the neck by a part of the facet. What that part is was read off the
+//! table of `docs/physics/convergence.md`; it is added, and a third resolution is asked for by
+//! the pipeline while the wanted accuracy is missed.
 
 use super::Figure;
 use super::gap::Gap;
 use super::reading::{Missing, Reading, Unclear};
 use super::void::VoidShape;
 use crate::flow::{Quantity, State};
-use crate::num::tolerance::{GROWTH_FLOOR_CLOSURE_WIDTHS, GROWTH_SAFETY};
+use crate::num::tolerance::{
+    CLOSING_SCATTER, GROWTH_FLOOR_CLOSURE_WIDTHS, GROWTH_SAFETY, OUTLINE_SCATTER, TOP_SCATTER,
+};
 
 /// The error model of growth at one closure width.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct GrowthError {
     closure_width_nm: f64,
     floor_nm: f64,
+    facet_nm: f64,
 }
 
 impl GrowthError {
-    /// The model at a closure width, in nm.
-    pub fn new(closure_width_nm: f64) -> Self {
-        Self { closure_width_nm, floor_nm: GROWTH_FLOOR_CLOSURE_WIDTHS * closure_width_nm }
+    /// The model at a closure width and the facet of the fine trace, both in nm.
+    pub fn new(closure_width_nm: f64, facet_nm: f64) -> Self {
+        let floor_nm = GROWTH_FLOOR_CLOSURE_WIDTHS * closure_width_nm;
+        Self { closure_width_nm, floor_nm, facet_nm }
     }
 
     /// A length, in nm.
@@ -41,7 +47,7 @@ impl GrowthError {
 
     /// An area, or a share of one: `perimeter_nm` of the outline, `whole` what the area is divided by.
     pub fn area(&self, coarse: f64, fine: f64, perimeter_nm: f64, whole: f64) -> Figure {
-        let floor = self.floor_nm * perimeter_nm / whole;
+        let floor = (self.floor_nm + OUTLINE_SCATTER * self.facet_nm) * perimeter_nm / whole;
         Figure::within(fine, GROWTH_SAFETY * (coarse - fine).abs() + floor)
     }
 
@@ -50,11 +56,25 @@ impl GrowthError {
         Some(self.length(coarse?, fine?))
     }
 
+    /// An open-field thickness at closure.
+    pub fn closing(&self, coarse: Option<f64>, fine: Option<f64>) -> Option<Figure> {
+        self.optional(coarse, fine).map(|figure| self.scattered(figure, CLOSING_SCATTER))
+    }
+
+    /// A figure with the scatter of this many facets beside its error.
+    fn scattered(&self, figure: Figure, facets: f64) -> Figure {
+        let scatter = facets * self.facet_nm;
+        Figure { low: figure.low - scatter, high: figure.high + scatter, ..figure }
+    }
+
     /// A geometric quantity of one space.
     pub fn reading(&self, coarse: &Gap, fine: &Gap, quantity: Quantity) -> Reading {
         match (coarse.value(quantity), fine.value(quantity)) {
             (Ok(c), Ok(f)) if quantity == Quantity::VoidShare => {
                 Reading::Known(self.area(c, f, fine.perimeter(), fine.drawn_area))
+            }
+            (Ok(c), Ok(f)) if quantity == Quantity::SealMargin => {
+                Reading::Known(self.scattered(self.length(c, f), CLOSING_SCATTER))
             }
             (Ok(c), Ok(f)) => {
                 let figure = self.length(c, f);
@@ -73,7 +93,8 @@ impl GrowthError {
     /// How far the top of a void may be off by the error of its neck's width, in nm.
     pub fn tip(&self, coarse: &VoidShape, fine: &VoidShape) -> f64 {
         let width = self.length(coarse.width, fine.width);
-        fine.tip(self.closure_width_nm, width.high - width.value)
+        let scatter = TOP_SCATTER * self.facet_nm;
+        fine.tip(self.closure_width_nm, width.high - width.value) + scatter
     }
 
     fn highest_tip(&self, coarse: &Gap, fine: &Gap) -> f64 {
@@ -87,7 +108,7 @@ impl GrowthError {
         let mut states = vec![fine.state, coarse.state];
         let film = |gap: &Gap| gap.seal.and_then(|seal| seal.film);
         if let (Some(c), Some(f)) = (film(coarse), film(fine))
-            && self.length(c.margin_nm, f.margin_nm).low <= 0.0
+            && self.scattered(self.length(c.margin_nm, f.margin_nm), CLOSING_SCATTER).low <= 0.0
         {
             states.push(State::Open);
         }

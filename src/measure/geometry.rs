@@ -20,6 +20,8 @@ pub struct Traced<'a> {
     pub coarse: &'a [Stage],
     /// The same at half the facet.
     pub fine: &'a [Stage],
+    /// That facet, in nm.
+    pub facet_nm: f64,
 }
 
 impl<'a> Traced<'a> {
@@ -32,7 +34,8 @@ impl<'a> Traced<'a> {
         index: usize,
     ) -> Option<Self> {
         let site = fine.cell.sites.get(index)?;
-        Some(Self { flow, variant, site, coarse: &coarse.stages, fine: &fine.stages })
+        let (facet_nm, coarse, fine) = (fine.facet_nm, &coarse.stages, &fine.stages);
+        Some(Self { flow, variant, site, coarse, fine, facet_nm })
     }
 
     /// The same site after an operation; `None` where the variant skips it.
@@ -80,7 +83,7 @@ impl<'a> Traced<'a> {
         for gap in sides.iter().flat_map(|s| [&s.coarse, &s.fine]) {
             finite(gap)?;
         }
-        let error = GrowthError::new(self.flow.library.settings.closure_width_nm);
+        let error = GrowthError::new(self.flow.library.settings.closure_width_nm, self.facet_nm);
         Ok(Geometry { error, sides })
     }
 }
@@ -124,7 +127,7 @@ impl Geometry {
         let seals = self.sides.iter().map(|s| {
             let seal = s.fine.seal?;
             let at = |gap: &Gap| Some(gap.seal?.film?.at_closure_nm);
-            Some((seal.step, self.error.optional(at(&s.coarse), at(&s.fine))))
+            Some((seal.step, self.error.closing(at(&s.coarse), at(&s.fine))))
         });
         let seals: Vec<_> = seals.collect::<Option<_>>()?;
         let thickness = |figure: Option<Figure>| figure.map_or(0.0, |figure| figure.value);
@@ -220,7 +223,7 @@ mod tests {
     const VOID: Void = Void { x: [-12.0, 12.0], z: [18.0, 70.0] };
 
     fn measured(flow: &Flow, coarse: &[Stage], fine: &[Stage], site: &Site) -> Geometry {
-        let traced = Traced { flow, variant: &flow.variants[0], site, coarse, fine };
+        let traced = Traced { flow, variant: &flow.variants[0], site, coarse, fine, facet_nm: 0.0 };
         traced.geometry().unwrap()
     }
 
@@ -288,6 +291,7 @@ mod tests {
             site,
             coarse: &stages,
             fine: &stages,
+            facet_nm: 0.0,
         };
         let resistivity = 5.595 - 0.375 * 39.0 * (1.0 / 40.0 - 1.0 / 80.0) * 1.72;
         let by_hand = resistivity * 1e4 / (20.0 * 80.0);
@@ -413,6 +417,7 @@ mod tests {
             site: &sites[0],
             coarse: &stages,
             fine: &stages,
+            facet_nm: 0.0,
         };
         let figures = site(&traced, &traced.geometry().unwrap(), Extras::default()).unwrap();
         assert_eq!(figures.sealed_by.as_deref(), Some("020"));

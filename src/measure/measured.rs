@@ -326,7 +326,8 @@ mod tests {
     }
 
     fn trace(flow: &Flow, stages: Vec<Stage>) -> Vec<CellTrace> {
-        vec![CellTrace { cell: sim::Cell { sites: flow.variants[0].sites() }, stages }]
+        let cell = sim::Cell { sites: flow.variants[0].sites() };
+        vec![CellTrace { cell, facet_nm: 0.0, stages }]
     }
 
     #[test]

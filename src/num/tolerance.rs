@@ -33,6 +33,15 @@ pub const CORNER_LOSS_NM: f64 = 5.0;
 /// Error of a figure of the fine trace, as a multiple of its difference to the coarse one.
 pub const GROWTH_SAFETY: f64 = 1.25;
 
+/// Scatter of the thickness at closure, over the facet length.
+pub const CLOSING_SCATTER: f64 = 0.14;
+
+/// Scatter of the height at which a neck closes, over the facet length.
+pub const TOP_SCATTER: f64 = 0.22;
+
+/// Scatter of a void's outline, over the facet length.
+pub const OUTLINE_SCATTER: f64 = 0.03;
+
 /// Least error of a length that a grown front has, as a multiple of the closure width.
 pub const GROWTH_FLOOR_CLOSURE_WIDTHS: f64 = 0.02;
 

@@ -102,6 +102,7 @@ impl Simulator {
             .zip(&nodes)
             .map(|((cell, _), node)| CellTrace {
                 cell: cell.clone(),
+                facet_nm: node.resolution.facet_nm,
                 stages: vec![node.stage.clone()],
             })
             .collect();

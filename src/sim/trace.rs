@@ -103,6 +103,8 @@ pub struct Stage {
 pub struct CellTrace {
     /// Which cell.
     pub cell: Cell,
+    /// Facet length of its fronts on the open surface, in nm.
+    pub facet_nm: f64,
     /// The wafer first, then one stage a step.
     pub stages: Vec<Stage>,
 }

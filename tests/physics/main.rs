@@ -10,6 +10,7 @@
 )]
 
 mod buffers;
+mod convergence;
 mod dense_array;
 mod flux;
 mod monte_carlo;

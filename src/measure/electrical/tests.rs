@@ -19,7 +19,7 @@ fn with_next_level(spaces: &[(f64, f64)]) -> Flow {
 }
 
 fn solved(flow: &Flow, coarse: &[Stage], fine: &[Stage], site: &Site) -> Electrical {
-    let traced = Traced { flow, variant: &flow.variants[0], site, coarse, fine };
+    let traced = Traced { flow, variant: &flow.variants[0], site, coarse, fine, facet_nm: 0.0 };
     Electrical::of(&traced, &[SIO2], ACCURACY).unwrap()
 }
 
