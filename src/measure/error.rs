@@ -7,9 +7,7 @@
 //! faster. The value is that of the fine trace, not an extrapolated one: closures make the order
 //! uneven. The error is the difference times the safety factor of Roache (J. Fluids Eng. 116,
 //! 405 (1994); from memory), plus a floor for what both traces share: the width at which a throat
-//! counts as closed is met to within a part of it. The top of a void is where its neck meets the
-//! closure width; a neck is nearly parallel, so an error of the width moves the top by far more:
-//! what it moves on the void's own outline is added to all that hangs on the top.
+//! counts as closed is met to within a part of it.
 //!
 //! Two resolutions may agree by chance: which facets meet in a closing neck scatters the thickness at
 //! closure and the height of the neck by a part of the facet. What that part is was read off the
@@ -61,6 +59,11 @@ impl GrowthError {
         self.optional(coarse, fine).map(|figure| self.scattered(figure, CLOSING_SCATTER))
     }
 
+    /// A length that moves with the top of a void.
+    pub fn top(&self, coarse: f64, fine: f64) -> Figure {
+        self.scattered(self.length(coarse, fine), TOP_SCATTER)
+    }
+
     /// A figure with the scatter of this many facets beside its error.
     fn scattered(&self, figure: Figure, facets: f64) -> Figure {
         let scatter = facets * self.facet_nm;
@@ -76,30 +79,14 @@ impl GrowthError {
             (Ok(c), Ok(f)) if quantity == Quantity::SealMargin => {
                 Reading::Known(self.scattered(self.length(c, f), CLOSING_SCATTER))
             }
-            (Ok(c), Ok(f)) => {
-                let figure = self.length(c, f);
-                let tip =
-                    if hangs_on_the_top(quantity) { self.highest_tip(coarse, fine) } else { 0.0 };
-                Reading::Known(Figure { low: figure.low - tip, high: figure.high + tip, ..figure })
-            }
+            (Ok(c), Ok(f)) if hangs_on_the_top(quantity) => Reading::Known(self.top(c, f)),
+            (Ok(c), Ok(f)) => Reading::Known(self.length(c, f)),
             (Err(Missing::Cut { .. }), Err(missing @ Missing::Cut { .. })) => {
                 Reading::Missing(missing)
             }
             (Err(c), Err(f)) if c == f => Reading::Missing(f),
             _ => Reading::Unclear(Unclear::Topology),
         }
-    }
-
-    /// How far the top of a void may be off by the error of its neck's width, in nm.
-    pub fn tip(&self, coarse: &VoidShape, fine: &VoidShape) -> f64 {
-        let width = self.length(coarse.width, fine.width);
-        let scatter = TOP_SCATTER * self.facet_nm;
-        fine.tip(self.closure_width_nm, width.high - width.value) + scatter
-    }
-
-    fn highest_tip(&self, coarse: &Gap, fine: &Gap) -> f64 {
-        let highest = fine.voids.iter().max_by(|a, b| a.top.total_cmp(&b.top));
-        highest.map_or(0.0, |void| self.tip(&Self::counterpart(coarse, void), void))
     }
 
     /// The states that a space may be in: what either trace shows, and the other side of closure

@@ -150,23 +150,17 @@ impl Geometry {
         sides
             .map(|(s, fine)| {
                 let coarse = GrowthError::counterpart(&s.coarse, fine);
-                let tip = error.tip(&coarse, fine);
-                let with_tip = |figure: Figure| Figure {
-                    low: figure.low - tip,
-                    high: figure.high + tip,
-                    ..figure
-                };
                 VoidFigures {
                     side: s.side,
-                    top_nm: with_tip(error.length(coarse.top, fine.top)),
+                    top_nm: error.top(coarse.top, fine.top),
                     bottom_nm: error.length(coarse.bottom, fine.bottom),
                     width_nm: error.length(coarse.width, fine.width),
-                    height_nm: with_tip(error.length(coarse.height, fine.height)),
+                    height_nm: error.top(coarse.height, fine.height),
                     area_nm2: error.area(coarse.area, fine.area, fine.perimeter, 1.0),
                     share: error.area(coarse.share, fine.share, fine.perimeter, s.fine.drawn_area),
                     side_film_nm: error.optional(coarse.side_film, fine.side_film),
                     floor_film_nm: error.optional(coarse.floor_film, fine.floor_film),
-                    roof_nm: error.optional(coarse.roof, fine.roof).map(with_tip),
+                    roof_nm: coarse.roof.zip(fine.roof).map(|(c, f)| error.top(c, f)),
                     outline_nm: fine.outline(),
                 }
             })

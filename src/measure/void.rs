@@ -3,7 +3,6 @@
 use super::film;
 use super::view::View;
 use crate::geom::{Point, Region};
-use crate::num::tolerance::GRID_PER_NM;
 
 /// One void as one trace shows it, lengths in nm.
 #[derive(Debug, Clone)]
@@ -71,31 +70,6 @@ impl VoidShape {
         }
     }
 
-    /// How far the top would sink if all of the void were narrower by `error`, in nm: from where
-    /// the closure width is first met, downward, to where `error` more is. A neck that is nearly
-    /// parallel makes this far more than `error`.
-    pub fn tip(&self, closure_width_nm: f64, error: f64) -> f64 {
-        let mut heights: Vec<_> = self.region.rings().flatten().map(|p| p.z).collect();
-        heights.sort_by(|a, b| b.total_cmp(a));
-        heights.dedup();
-        let cell = 1.0 / GRID_PER_NM;
-        let width = |z: f64| {
-            let row = self.region.row(z);
-            row.first().zip(row.last()).map_or(0.0, |(first, last)| last[1] - first[0])
-        };
-        let widths: Vec<_> = heights.into_iter().map(|z| (z, width(z - cell))).collect();
-        let met = |wanted: f64| {
-            let at = widths.iter().position(|(_, width)| *width >= wanted)?;
-            let (z, reached) = widths[at];
-            let (above, narrower) = widths[at.checked_sub(1).unwrap_or(at)];
-            let share =
-                if reached > narrower { (wanted - narrower) / (reached - narrower) } else { 1.0 };
-            Some(above + (z - above) * share)
-        };
-        let (top, sunk) = (met(closure_width_nm), met(closure_width_nm + error));
-        top.zip(sunk).map_or(0.0, |(top, sunk)| top - sunk)
-    }
-
     /// Outline points, x from the middle of the space, z above the line bottom, in nm.
     pub fn outline(&self) -> Vec<[f64; 2]> {
         let ring = self.region.rings().next();
@@ -110,26 +84,4 @@ impl VoidShape {
 pub(super) fn drawn_area(wafer: &View) -> f64 {
     let between_axes = Region::rectangle(wafer.ends, [0.0, wafer.line_top]);
     between_axes.difference(&wafer.lines).area()
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-    use crate::measure::hand::Cell;
-
-    #[test]
-    fn a_nearly_parallel_neck_moves_the_top_by_more_than_its_width_errs() {
-        // 20 nm wide up to 40 nm, then a neck that narrows from 0.9 to 0.5 nm over 10 nm.
-        let outline = [(-10.0, 20.0), (10.0, 20.0), (10.0, 40.0), (0.45, 41.0), (0.25, 51.0)];
-        let right = outline.into_iter().map(|(x, z)| Point::new(x, z));
-        let left = [(-0.25, 51.0), (-0.45, 41.0), (-10.0, 40.0)].map(|(x, z)| Point::new(x, z));
-        let void = Region::from_rings([right.chain(left).collect::<Vec<_>>()]);
-        let space = View::of(&Cell { spaces: vec![40.0, 40.0] }.section(10.0, 120.0, &[]), 1);
-        let shape = VoidShape::of(&void, &space, 3200.0, None).unwrap();
-        let tip = shape.tip(0.5, 0.1);
-        assert!((tip - 2.5).abs() < 1e-3, "0.1 nm more width is met 2.5 nm down, not {tip}");
-        let blunt =
-            VoidShape::of(&Region::rectangle([-10.0, 10.0], [20.0, 40.0]), &space, 3200.0, None);
-        assert_eq!(blunt.unwrap().tip(0.5, 0.1), 0.0);
-    }
 }
