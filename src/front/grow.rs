@@ -38,7 +38,7 @@ const MOST_EXTRAPOLATION: f64 = 0.2;
 /// More facets than this are refused.
 const MOST_FACETS: usize = 20_000;
 /// Vertices of a surface set right are left out this near to a chord, over the finest facet.
-const THINNED: f64 = 0.05;
+const THINNED: f64 = 0.4;
 /// Closures of one step; what is left is taken up in the next.
 const MOST_CLOSURES: usize = 1000;
 /// Trials for the thickness at which a throat closes.
@@ -234,7 +234,8 @@ impl<'a> Run<'a> {
         let left = swept(&self.surface.ambient(sky)?, &self.surface, &images);
         let (open, closed) = shut_off(&left, self.surface.walls, sky, closed);
         let notches = notches(&self.surface);
-        self.surface = rebuilt(&open, sky, &self.surface, THINNED * self.mesh.least_nm);
+        let set_right = rebuilt(&open, sky, &self.surface, THINNED * self.mesh.least_nm);
+        self.surface = if self.transport.is_conformal() { set_right } else { faired(set_right) };
         self.record(closed, &notches);
         self.narrow = narrow_places(&self.surface);
         Ok(())

@@ -6,7 +6,7 @@
 //! (Huygens' construction; the front moves only into the ambient). Cost: a sort and a sweep over
 //! heights; booleans only where fronts passed.
 
-use super::surface::Surface;
+use super::surface::{Surface, area};
 use crate::geom::{Point, Region};
 use crate::num::tolerance::{ON_EDGE_NM, SAME_LINE_NM};
 
@@ -67,26 +67,37 @@ fn cross(a: Point, b: Point, c: Point, d: Point) -> bool {
 /// The ambient left by a step in which each piece goes from its place to its image; `images` are
 /// the ends of the images, chain by chain, piece by piece.
 pub(super) fn swept(ambient: &Region, surface: &Surface, images: &[Vec<[Point; 2]>]) -> Region {
-    let quads = surface.chains.iter().zip(images).flat_map(|(chain, images)| {
-        chain.pieces.iter().zip(images).map(|(piece, [from, to])| {
+    let mut rings = Vec::new();
+    for (chain, images) in surface.chains.iter().zip(images) {
+        let mut fan: Vec<Point> = Vec::new();
+        for (piece, [from, to]) in chain.pieces.iter().zip(images) {
             let (a, b) = (piece.facet.from, piece.facet.to);
+            if a == b {
+                // The pieces of a fan sweep one polygon around their point.
+                if fan.is_empty() {
+                    fan.extend([a, *from]);
+                }
+                fan.push(*to);
+                continue;
+            }
+            rings.extend(counter_clockwise(std::mem::take(&mut fan)));
             let inside = piece.facet.normal * (-BACK_NM);
-            vec![a + inside, b + inside, *to, *from]
-        })
-    });
-    let quads: Vec<Vec<Point>> = quads.flat_map(wound).collect();
-    ambient.difference(&Region::from_rings(quads))
+            let quad = [a + inside, b + inside, *to, *from];
+            rings.extend(counter_clockwise(vec![quad[0], quad[1], quad[2]]));
+            rings.extend(counter_clockwise(vec![quad[0], quad[2], quad[3]]));
+        }
+        rings.extend(counter_clockwise(fan));
+    }
+    ambient.difference(&Region::from_rings(rings))
 }
 
 /// How far into the solid a sweep begins, so that neighbours leave no hairs, in nm.
 const BACK_NM: f64 = 1e-4;
 
-/// A quadrilateral as rings that all wind the same way: two triangles, either may be turned over.
-fn wound(quad: Vec<Point>) -> Vec<Vec<Point>> {
-    let triangle = |i: usize, j: usize, k: usize| {
-        let ring = vec![quad[i], quad[j], quad[k]];
-        let area = (ring[1] - ring[0]).cross(ring[2] - ring[0]);
-        if area < 0.0 { vec![ring[0], ring[2], ring[1]] } else { ring }
-    };
-    vec![triangle(0, 1, 2), triangle(0, 2, 3)]
+/// A ring that winds like all others, so that overlaps do not cancel; none of two points.
+fn counter_clockwise(mut ring: Vec<Point>) -> Option<Vec<Point>> {
+    if area(&ring) < 0.0 {
+        ring.reverse();
+    }
+    (ring.len() > 2).then_some(ring)
 }
