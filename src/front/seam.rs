@@ -47,17 +47,18 @@ pub(super) fn notches(surface: &Surface) -> Vec<(usize, Point)> {
     surface.chains.iter().flat_map(of).collect()
 }
 
-/// Marks the lowest point of the surface on a plug as the notch of a seam.
+/// Marks where the surface meets a plug as the notch of a seam: on the wall where the plug lies at
+/// one, else at its lowest point there.
 pub(super) fn plant(surface: &mut Surface, plug: &Region, seam: usize) {
     let on_plug = |p: Point| plug.edges().any(|(a, b)| p.distance_to_segment(a, b) < SAME_LINE_NM);
-    let mut lowest: Option<(Point, usize, usize)> = None;
-    for (c, chain) in surface.chains.iter().enumerate() {
-        for (k, p) in chain.points().enumerate() {
-            if lowest.is_none_or(|(at, _, _)| p.z < at.z) && on_plug(p) {
-                lowest = Some((p, c, k));
-            }
-        }
-    }
+    let inside = |p: Point| !surface.walls.contains(&p.x);
+    let points = surface.chains.iter().enumerate().flat_map(|(c, chain)| {
+        let of_chain = chain.points().collect::<Vec<_>>().into_iter().enumerate();
+        of_chain.map(move |(k, p)| (p, c, k))
+    });
+    let lowest = points
+        .filter(|(p, ..)| on_plug(*p))
+        .min_by(|(p, ..), (q, ..)| inside(*p).cmp(&inside(*q)).then(p.z.total_cmp(&q.z)));
     if let Some((_, c, k)) = lowest {
         let chain = &mut surface.chains[c];
         match chain.pieces.get_mut(k) {

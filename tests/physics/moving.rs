@@ -257,3 +257,15 @@ fn enclosed_voids_do_not_grow() {
     let growth = grow(&scene, &CONFORMAL, 5.0, &resolution(1.0)).unwrap();
     assert!((growth.film.area() - 200.0).abs() < 1e-6, "{}", growth.film.area());
 }
+
+/// Above a closed throat the fronts go on meeting in a notch: the seam runs up from the throat, in the middle
+/// of the space, and ends below the film's surface where the notch opens.
+#[test]
+fn a_seam_runs_up_from_the_throat() {
+    let array = Array { s: 32.0, w: 32.0, h: 96.0, taper_deg: 0.0 };
+    let growth = grow(&array.half(), &mixture(0.0, 0.0, 1.0, 0.3), 60.0, &resolution(1.6)).unwrap();
+    let [closure] = &growth.closures[..] else { panic!("{:?}", growth.closures) };
+    let (first, last) = (closure.seam[0], closure.seam[closure.seam.len() - 1]);
+    assert!(last.z > first.z + 5.0 && last.z < 96.0 + 60.0, "{:?}", closure.seam);
+    assert!(closure.seam.iter().all(|p| (p.x - 32.0).abs() < 0.1), "{:?}", closure.seam);
+}

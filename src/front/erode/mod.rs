@@ -147,7 +147,7 @@ struct Arrived {
 
 /// Step over the facet length where the flux is carried on into the step, and where sharp lobes cast
 /// shadows too sharp for that.
-const STEP_CARRIED: f64 = 2.0;
+const STEP_CARRIED: f64 = 0.5;
 const STEP_SHARP: f64 = 0.5;
 /// Most change of a flux that is carried on, relative.
 const MOST_CARRIED: f64 = 0.2;
