@@ -145,10 +145,8 @@ struct Arrived {
     facets: Vec<(Point, Point, Option<usize>, f64)>,
 }
 
-/// Step over the facet length where the flux is carried on into the step, and where sharp lobes cast
-/// shadows too sharp for that.
-const STEP_CARRIED: f64 = 0.5;
-const STEP_SHARP: f64 = 0.5;
+/// Step over the facet length where the flux varies from place to place.
+const STEP_DIFFUSE: f64 = 0.5;
 /// Most change of a flux that is carried on, relative.
 const MOST_CARRIED: f64 = 0.2;
 /// A facet is the same one a step later where it lies within this many facet lengths and steps, and
@@ -256,13 +254,7 @@ impl<'a> Etch<'a> {
         if self.source.is_conformal() && self.groups.rates.len() == 1 {
             return f64::INFINITY;
         }
-        let facets = if self.source.is_sharp() {
-            STEP_SHARP
-        } else if self.source.is_diffuse() {
-            STEP_CARRIED
-        } else {
-            1.0
-        };
+        let facets = if self.source.is_diffuse() { STEP_DIFFUSE } else { 1.0 };
         let fastest = self.groups.rates.iter().copied().fold(0.0, f64::max);
         facets * self.resolution.facet_nm / fastest.max(f64::MIN_POSITIVE)
     }
